@@ -1,0 +1,1 @@
+// Keeps the target valid until the stage has its first source.
