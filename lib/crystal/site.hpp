@@ -1,5 +1,6 @@
 #pragma once
 
+#include <cstdint>
 #include <optional>
 #include <span>
 #include <string>
@@ -44,6 +45,7 @@ class Orbit {
  private:
   std::vector<OrbitAtom> atoms_;
   std::vector<std::size_t> site_group_;
+  std::vector<std::uint8_t> atom_of_operation_;  ///< Where each operation sends the first atom.
 };
 
 /// Tolerance, in fractional coordinates, within which a site is moved to a special position.

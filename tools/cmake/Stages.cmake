@@ -6,7 +6,8 @@ add_library(spinsieve_options INTERFACE)
 target_compile_features(spinsieve_options INTERFACE cxx_std_20)
 target_include_directories(spinsieve_options INTERFACE ${PROJECT_SOURCE_DIR}/lib)
 target_compile_options(spinsieve_options INTERFACE
-  -Wall -Wextra -Wpedantic -Wshadow -Wconversion -Wsign-conversion -Wold-style-cast)
+  -Wall -Wextra -Wpedantic -Wshadow -Wconversion -Wsign-conversion -Wold-style-cast
+  $<$<CXX_COMPILER_ID:GNU>:-Wno-restrict>)  # g++ 12 misreads "text" + string (GCC bug 105651).
 if(PROJECT_IS_TOP_LEVEL)
   target_compile_options(spinsieve_options INTERFACE -Werror)
 endif()
