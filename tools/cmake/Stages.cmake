@@ -2,6 +2,9 @@
 # A stage's tests link its own objects and those of earlier stages only, so that a dependency
 # against the data flow does not even link.
 
+# A stage looks for its carriers in its own folder; the tests and the program link them too.
+set(CMAKE_FIND_PACKAGE_TARGETS_GLOBAL ON)
+
 add_library(spinsieve_options INTERFACE)
 target_compile_features(spinsieve_options INTERFACE cxx_std_20)
 target_include_directories(spinsieve_options INTERFACE ${PROJECT_SOURCE_DIR}/lib)
@@ -9,10 +12,15 @@ target_compile_options(spinsieve_options INTERFACE
   -Wall -Wextra -Wpedantic -Wshadow -Wconversion -Wsign-conversion -Wold-style-cast
   $<$<CXX_COMPILER_ID:GNU>:-Wno-restrict>)  # g++ 12 misreads "text" + string (GCC bug 105651).
 if(PROJECT_IS_TOP_LEVEL)
-  target_compile_options(spinsieve_options INTERFACE -Werror)
+  target_compile_options(spinsieve_options INTERFACE $<$<CXX_COMPILER_ID:GNU>:-Werror>)
 endif()
 if(SPINSIEVE_SANITIZE)
   add_compile_options(-fsanitize=address,undefined -fno-sanitize-recover=all -fno-omit-frame-pointer)
+  add_link_options(-fsanitize=address,undefined)
+endif()
+if(SPINSIEVE_FUZZ)
+  # Coverage feedback everywhere, the fuzzer's main only in the fuzz targets.
+  add_compile_options(-fsanitize=fuzzer-no-link,address,undefined -fno-sanitize-recover=all)
   add_link_options(-fsanitize=address,undefined)
 endif()
 
@@ -27,26 +35,35 @@ function(spinsieve_stage stage)
   list(TRANSFORM arg_HEADERS PREPEND ${CMAKE_CURRENT_SOURCE_DIR}/)
   target_sources(spinsieve PUBLIC FILE_SET HEADERS BASE_DIRS ${PROJECT_SOURCE_DIR}/lib
     FILES ${arg_HEADERS})
-  target_link_libraries(spinsieve PRIVATE ${arg_LIBRARIES})
-endfunction()
-
-# The objects and libraries of a stage and all stages before it.
-function(spinsieve_link_stages target last)
-  foreach(stage IN LISTS SPINSIEVE_STAGES)
-    get_target_property(libraries spinsieve_${stage} SPINSIEVE_LIBRARIES)
-    target_sources(${target} PRIVATE $<TARGET_OBJECTS:spinsieve_${stage}>)
-    target_link_libraries(${target} PRIVATE spinsieve_options)
-    if(libraries)
-      target_link_libraries(${target} PRIVATE ${libraries})
-    endif()
-    if(stage STREQUAL last)
-      break()
+  foreach(carrier IN LISTS arg_LIBRARIES)
+    get_target_property(kind ${carrier} TYPE)
+    if(carrier STREQUAL "Eigen3::Eigen")  # The only carrier in our headers.
+      target_link_libraries(spinsieve PUBLIC ${carrier})
+    elseif(NOT kind STREQUAL "INTERFACE_LIBRARY")  # Header-only carriers are compiled in.
+      target_link_libraries(spinsieve PRIVATE ${carrier})
+      set_property(TARGET spinsieve APPEND PROPERTY SPINSIEVE_CARRIERS ${carrier})
     endif()
   endforeach()
 endfunction()
 
-# spinsieve_tests(<name> <last stage> file_test.cpp …): one test executable, discovered by ctest.
-# Test names that contain "Slow" carry the label "slow".
+# The objects and libraries of a stage and all stages before it.
+function(spinsieve_link_stages target last)
+  target_link_libraries(${target} PRIVATE spinsieve_options)
+  foreach(stage IN LISTS SPINSIEVE_STAGES)
+    get_target_property(libraries spinsieve_${stage} SPINSIEVE_LIBRARIES)
+    target_sources(${target} PRIVATE $<TARGET_OBJECTS:spinsieve_${stage}>)
+    if(libraries)
+      target_link_libraries(${target} PRIVATE ${libraries})
+    endif()
+    if(stage STREQUAL last)
+      return()
+    endif()
+  endforeach()
+  message(FATAL_ERROR "${target}: no stage is called '${last}'")
+endfunction()
+
+# spinsieve_tests(<name> <last stage> file_test.cpp …): one test executable, each of its tests known
+# to ctest. Tests whose name contains "Slow" carry the label "slow".
 function(spinsieve_tests name last)
   if(NOT ARGN)
     return()
@@ -55,7 +72,18 @@ function(spinsieve_tests name last)
   spinsieve_link_stages(${name}_tests ${last})
   target_link_libraries(${name}_tests PRIVATE GTest::gmock GTest::gtest_main)
   target_compile_definitions(${name}_tests PRIVATE SPINSIEVE_SOURCE_DIR="${PROJECT_SOURCE_DIR}")
-  add_test(NAME ${name} COMMAND ${name}_tests)
+  gtest_discover_tests(${name}_tests TEST_PREFIX ${name}. TEST_FILTER "-*Slow*"
+    DISCOVERY_TIMEOUT 120 PROPERTIES TIMEOUT 600)
+  gtest_discover_tests(${name}_tests TEST_PREFIX ${name}. TEST_FILTER "*Slow*"
+    DISCOVERY_TIMEOUT 120 PROPERTIES TIMEOUT 1800 LABELS slow)
+endfunction()
+
+# spinsieve_fuzz(<name> <last stage> source.cpp): a libFuzzer target build/fuzz/<name>_fuzz.
+function(spinsieve_fuzz name last)
+  add_executable(${name}_fuzz ${ARGN})
+  spinsieve_link_stages(${name}_fuzz ${last})
+  target_link_options(${name}_fuzz PRIVATE -fsanitize=fuzzer)
+  set_target_properties(${name}_fuzz PROPERTIES RUNTIME_OUTPUT_DIRECTORY ${PROJECT_BINARY_DIR})
 endfunction()
 
 # spinsieve_embed(<stage> <variable prefix> files…): each file becomes a std::string_view

@@ -1,0 +1,41 @@
+# cmake -DSOURCE_DIR=… -DSTAGES=a;b;… -P stage_order.cmake: each stage includes itself and earlier
+# stages only, and carrying libraries stay where they belong.
+cmake_minimum_required(VERSION 3.25)
+set(faults "")
+
+# Path patterns of the files that may include a header, beside the pattern of the header.
+set(carriers "yaml-cpp/" "gemmi/" "nlohmann/" "CLI/" "oneapi/|tbb/" "iostream>" "spglib\\.h>")
+set(homes "^input/[^/]*\\.cpp$" "^(input|report)/[^/]*\\.cpp$" "^report/[^/]*\\.cpp$" "^$" "^$" "^$"
+  "^crystal/spglib\\.cpp$")
+
+set(earlier "")
+foreach(stage IN LISTS STAGES)
+  list(APPEND earlier ${stage})
+  file(GLOB files RELATIVE ${SOURCE_DIR}/lib ${SOURCE_DIR}/lib/${stage}/*.?pp)
+  foreach(file IN LISTS files)
+    file(STRINGS ${SOURCE_DIR}/lib/${file} includes REGEX "^ *# *include")
+    foreach(line IN LISTS includes)
+      if(line MATCHES "\"([a-z_]+)/")
+        if(NOT CMAKE_MATCH_1 IN_LIST earlier)
+          list(APPEND faults "${file} includes the later stage ${CMAKE_MATCH_1}")
+        endif()
+      endif()
+      foreach(carrier home IN ZIP_LISTS carriers homes)
+        if(line MATCHES "<(${carrier})" AND NOT file MATCHES "${home}")
+          list(APPEND faults "${file} must not hold the line ${line}")
+        endif()
+      endforeach()
+      if(line MATCHES "<boost/" AND file MATCHES "\\.hpp$")
+        list(APPEND faults "${file} brings Boost into a header")
+      endif()
+      if(line MATCHES "<Eigen/" AND file MATCHES "^(exact|crystal|symmetry|modes|arrangement)/.*\\.hpp$")
+        list(APPEND faults "${file} brings Eigen into a header before scattering/")
+      endif()
+    endforeach()
+  endforeach()
+endforeach()
+
+if(faults)
+  list(JOIN faults "\n  " text)
+  message(FATAL_ERROR "\n  ${text}")
+endif()
