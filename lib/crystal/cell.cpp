@@ -4,7 +4,9 @@
 #include <cstdio>
 #include <numbers>
 #include <string>
+#include <vector>
 
+#include "crystal/lattice.hpp"
 #include "crystal/space_group.hpp"
 #include "exact/error.hpp"
 
@@ -109,24 +111,11 @@ Vector3 to_double(const FractionVector& v) {
 
 namespace {
 
-using IntMetric = std::array<std::array<long, 3>, 3>;
-
-/// Σ Rᵀ G R over the group, of a metric without symmetry: as general as the group allows.
-IntMetric generic_metric(const SpaceGroup& group) {
-  constexpr IntMetric start{{{1009, 57, 83}, {57, 1487, 131}, {83, 131, 1999}}};
-  IntMetric sum{};
-  for (const Operation& operation : group.operations())
-    for (std::size_t i = 0; i < 3; ++i)
-      for (std::size_t j = 0; j < 3; ++j)
-        for (std::size_t p = 0; p < 3; ++p)
-          for (std::size_t q = 0; q < 3; ++q)
-            sum[i][j] += operation.rotation[p][i] * start[p][q] * operation.rotation[q][j];
-  return sum;
-}
-
 /// What the group asks of its cell, such as "a = b, α = 90°, β = 90°, γ = 120°".
 std::string cell_constraints(const SpaceGroup& group) {
-  const IntMetric G = generic_metric(group);
+  std::vector<IntMatrix> rotations;
+  for (const Operation& operation : group.operations()) rotations.push_back(operation.rotation);
+  const IntMetric G = averaged_metric(rotations, generic_metric);
   const std::array<std::string, 3> angle{"α", "β", "γ"};
   std::vector<std::string> parts;
   const bool ab = G[0][0] == G[1][1];

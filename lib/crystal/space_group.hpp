@@ -78,6 +78,10 @@ class SpaceGroup {
 /// Throws Error that quotes the text and names the nearest known symbols.
 SpaceGroup parse_space_group(std::string_view text);
 
+/// Finds a setting from its Hall symbol alone; some, such as "P 2", also read as Hermann-Mauguin
+/// symbols of another setting, which parse_space_group prefers. Throws Error that quotes the text.
+SpaceGroup parse_hall_symbol(std::string_view text);
+
 /// Rotations, in the axes of the group, of every symmetry of its lattice: the integer matrices
 /// that keep the lattice and every metric tensor the group allows. Identity first.
 std::vector<IntMatrix> holohedry(const SpaceGroup& group);
