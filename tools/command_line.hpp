@@ -7,13 +7,11 @@
 #include <vector>
 
 #include "output.hpp"
+#include "report/conventions.hpp"
 
 namespace spinsieve {
 
 enum class OutputForm { text, json };
-
-/// Which sign of 2πi k·L the report is written in.
-enum class PhaseSign { plus, minus };
 
 /// What the user asked for, as parsed: files are not opened yet.
 struct CommandLine {
