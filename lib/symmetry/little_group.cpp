@@ -192,6 +192,26 @@ FractionVector SymmetryTables::conventional(const IntVector& reduced_k, int k_de
   return k;
 }
 
+FractionVector SymmetryTables::conventional(const FractionVector& primitive_k) const {
+  FractionVector k;
+  for (std::size_t i = 0; i < 3; ++i)
+    for (std::size_t r = 0; r < 3; ++r) k[i] += Fraction(inverse_primitive_[i][r]) * primitive_k[r];
+  return k;
+}
+
+FractionVector SymmetryTables::primitive(const FractionVector& k) const {
+  FractionVector result;
+  for (std::size_t r = 0; r < 3; ++r)
+    for (std::size_t i = 0; i < 3; ++i)
+      result[r] += Fraction(primitive_[r][i], primitive_denominator_) * k[i];
+  return result;
+}
+
+bool SymmetryTables::keeps(const Wavevector& k, const IntMatrix& R) const {
+  const Wavevector difference = spinsieve::row_times(k, R) - k;
+  return !difference.is_symbolic() && group_.in_reciprocal_lattice(difference.constant);
+}
+
 LittleGroup::LittleGroup(std::shared_ptr<const SymmetryTables> tables, const Wavevector& k)
     : tables_(std::move(tables)), k_(k) {
   const SpaceGroup& group = tables_->group();

@@ -32,6 +32,11 @@ class SymmetryTables {
   int primitive_denominator() const noexcept { return primitive_denominator_; }
   /// Inverse of reduced(): a k in the conventional reciprocal basis, exact.
   FractionVector conventional(const IntVector& reduced_k, int k_denominator) const;
+  /// Between components on the primitive and the conventional reciprocal basis, not reduced.
+  FractionVector conventional(const FractionVector& primitive_k) const;
+  FractionVector primitive(const FractionVector& k) const;
+  /// True when kR ≡ k, for all values of free parameters.
+  bool keeps(const Wavevector& k, const IntMatrix& R) const;
 
  private:
   SpaceGroup group_;
