@@ -365,21 +365,22 @@ Wavevector readable(const SymmetryTables& tables, const Torus& torus) {
   return *best;
 }
 
-Stratum make_stratum(const SymmetryTables& tables, const RotationSet& rotations,
+Stratum make_stratum(const SymmetryTables& tables, std::span<const IntMatrix> rotations,
                      const std::set<Torus>& star) {
   Stratum stratum;
   const std::size_t dimension = 3 - star.begin()->conditions.size();
   constexpr std::array<StratumKind, 4> kinds{StratumKind::point, StratumKind::line,
                                              StratumKind::plane, StratumKind::general};
   stratum.kind = kinds[dimension];
-  stratum.arms = star.size();
-  stratum.cogroup_order = rotations.order() / star.size();
   std::optional<Wavevector> best;
   for (const Torus& torus : star) {
     const Wavevector k = readable(tables, torus);
     if (!best || neatness(k) < neatness(*best)) best = k;
   }
   stratum.k = *best;
+  stratum.cogroup_order = static_cast<std::size_t>(std::ranges::count_if(
+      rotations, [&](const IntMatrix& R) { return tables.keeps(stratum.k, R); }));
+  stratum.arms = rotations.size() / stratum.cogroup_order;
   return stratum;
 }
 
@@ -473,13 +474,7 @@ std::vector<Stratum> strata(const SymmetryTables& tables, std::span<const IntMat
       if (known.contains(torus)) continue;
       const std::set<Torus> star = star_of(set, torus);
       known.insert(star.begin(), star.end());
-      Stratum stratum = make_stratum(tables, set, star);
-      // The co-group keeps each k of the torus, not only the torus as a set.
-      std::size_t order = 0;
-      for (const IntMatrix& R : rotations)
-        if (tables.keeps(stratum.k, R)) ++order;
-      stratum.cogroup_order = order;
-      result.push_back(std::move(stratum));
+      result.push_back(make_stratum(tables, rotations, star));
     }
   }
   sort_strata(result);
@@ -500,7 +495,7 @@ std::vector<Stratum> strata(const SymmetryTables& tables) {
       if (known.contains(torus)) continue;
       const std::set<Torus> star = star_of(set, torus);
       known.insert(star.begin(), star.end());
-      Stratum stratum = make_stratum(tables, set, star);
+      Stratum stratum = make_stratum(tables, rotations, star);
       stratum.isolated = false;
       result.push_back(std::move(stratum));
     }
