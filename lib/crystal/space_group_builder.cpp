@@ -11,11 +11,13 @@ namespace {
 
 constexpr IntMatrix identity{{{1, 0, 0}, {0, 1, 0}, {0, 0, 1}}};
 
-/// A number for each rotation with entries in −15 … 16, distinct for distinct rotations.
+constexpr int largest_entry = 15;
+
+/// A number for each rotation with entries within ±largest_entry, distinct for distinct rotations.
 std::uint64_t rotation_key(const IntMatrix& R) {
   std::uint64_t key = 0;
   for (const IntVector& row : R)
-    for (const int entry : row) key = key << 5U | static_cast<std::uint64_t>(entry + 15);
+    for (const int entry : row) key = key << 5U | static_cast<std::uint64_t>(entry + largest_entry);
   return key;
 }
 
@@ -40,7 +42,14 @@ SpaceGroup SpaceGroupBuilder::from_setting(HallSetting setting,
 
 SpaceGroup SpaceGroupBuilder::from_representatives(HallSetting setting,
                                                    std::vector<Operation> operations,
-                                                   std::vector<FractionVector> centrings) {
+                                                   std::vector<FractionVector> centrings,
+                                                   const FractionVector& origin_shift) {
+  for (const Operation& operation : operations)
+    for (const IntVector& row : operation.rotation)
+      for (const int entry : row)
+        if (entry < -largest_entry || entry > largest_entry)
+          throw Error("operation " + to_string(operation) +
+                      " has factors beyond 15; less skewed axes are needed");
   SpaceGroup group;
   group.number_ = setting.number;
   group.hall_number_ = setting.hall_number;
@@ -51,6 +60,7 @@ SpaceGroup SpaceGroupBuilder::from_representatives(HallSetting setting,
   std::sort(centrings.begin(), centrings.end());
   group.centrings_ = std::move(centrings);
   group.operations_ = std::move(operations);
+  group.origin_shift_ = group.lattice_reduced(origin_shift);
   for (Operation& operation : group.operations_)
     operation.translation = group.lattice_reduced(operation.translation);
   fill_products(group);

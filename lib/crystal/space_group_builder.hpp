@@ -13,9 +13,11 @@ class SpaceGroupBuilder {
   /// From a tabulated setting and all its operations, centrings included, identity first.
   static SpaceGroup from_setting(HallSetting setting, const std::vector<Operation>& operations);
 
-  /// From representatives with distinct rotations, identity first, and the centrings, 0 first.
+  /// From representatives with distinct rotations, identity first, the centrings, and the shift
+  /// told by SpaceGroup::origin_shift. Throws Error when a rotation has an entry beyond ±15.
   static SpaceGroup from_representatives(HallSetting setting, std::vector<Operation> operations,
-                                         std::vector<FractionVector> centrings);
+                                         std::vector<FractionVector> centrings,
+                                         const FractionVector& origin_shift = {});
 
  private:
   static void fill_products(SpaceGroup& group);

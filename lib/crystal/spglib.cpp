@@ -3,10 +3,12 @@
 #include <cmath>
 #include <memory>
 #include <mutex>
+#include <span>
 #include <stdexcept>
 
 #include <spglib.h>
 
+#include "crystal/space_group_builder.hpp"
 #include "exact/error.hpp"
 
 namespace spinsieve {
@@ -131,6 +133,87 @@ std::vector<Operation> hall_operations(int hall_number) {
   for (int i = 0; i < count; ++i)
     operations.push_back(exact_operation(rotations[i], translations[i]));
   return operations;
+}
+
+namespace {
+
+struct MadeUpCrystal {
+  double lattice[3][3];  ///< Columns a, b, c in Å; right-handed.
+  std::vector<std::array<double, 3>> atoms;
+  std::vector<int> types;
+};
+
+/// Lower triangle rows of Cholesky's factor are the axes, some ten Å long.
+void set_lattice(MadeUpCrystal& crystal, const IntMetric& G, double volume) {
+  double L[3][3] = {};
+  for (std::size_t i = 0; i < 3; ++i)
+    for (std::size_t j = 0; j <= i; ++j) {
+      double sum = static_cast<double>(G[i][j]);
+      for (std::size_t k = 0; k < j; ++k) sum -= L[i][k] * L[j][k];
+      L[i][j] = i == j ? std::sqrt(sum) : sum / L[j][j];
+    }
+  const double scale = std::cbrt(volume / (L[0][0] * L[1][1] * L[2][2]));
+  for (std::size_t i = 0; i < 3; ++i)
+    for (std::size_t j = 0; j < 3; ++j) crystal.lattice[j][i] = scale * L[i][j];
+}
+
+double draw(std::uint64_t& state) {
+  state = state * 6364136223846793005U + 1442695040888963407U;
+  return static_cast<double>(state >> 33U) / static_cast<double>(std::uint64_t{1} << 31U);
+}
+
+void add_orbit(MadeUpCrystal& crystal, std::span<const Operation> operations, int type,
+               std::uint64_t& state) {
+  const std::array<double, 3> start{draw(state), draw(state), draw(state)};
+  for (const Operation& operation : operations) {
+    std::array<double, 3> image{};
+    for (std::size_t i = 0; i < 3; ++i) {
+      image[i] = operation.translation[i].to_double();
+      for (std::size_t j = 0; j < 3; ++j) image[i] += operation.rotation[i][j] * start[j];
+      image[i] -= std::floor(image[i]);
+    }
+    crystal.atoms.push_back(image);
+    crystal.types.push_back(type);
+  }
+}
+
+/// The data set in the default setting of the type, or in that of a hall number; null on failure.
+std::unique_ptr<SpglibDataset, void (*)(SpglibDataset*)> dataset(MadeUpCrystal& crystal,
+                                                                 int hall_number) {
+  constexpr double tolerance = 1e-5;  // Å, with axes of some ten Å and exact input.
+  std::vector<double> positions;
+  for (const std::array<double, 3>& atom : crystal.atoms)
+    positions.insert(positions.end(), atom.begin(), atom.end());
+  const std::scoped_lock lock(door());
+  return {spg_get_dataset_with_hall_number(
+              crystal.lattice,
+              reinterpret_cast<double(*)[3]>(positions.data()),  // NOLINT: three numbers an atom.
+              crystal.types.data(), static_cast<int>(crystal.types.size()), hall_number, tolerance),
+          spg_free_dataset};
+}
+
+}  // namespace
+
+std::optional<FoundSymmetry> search_symmetry(std::span<const Operation> operations,
+                                             const IntMetric& G, std::uint64_t seed) {
+  MadeUpCrystal crystal{};
+  std::uint64_t state = seed;
+  add_orbit(crystal, operations, 1, state);
+  add_orbit(crystal, operations, 2, state);
+  set_lattice(crystal, G, 100.0 * static_cast<double>(crystal.atoms.size()));
+  const auto first = dataset(crystal, 0);
+  if (!first || first->n_operations != static_cast<int>(operations.size())) return std::nullopt;
+  const int number = first->spacegroup_number;
+  const auto found = dataset(crystal, standard_hall_number(number));
+  if (!found || found->spacegroup_number != number) return std::nullopt;
+  FoundSymmetry result;
+  result.number = number;
+  for (std::size_t i = 0; i < 3; ++i) {
+    for (std::size_t j = 0; j < 3; ++j)
+      result.transformation[i][j] = found->transformation_matrix[i][j];
+    result.origin_shift[i] = found->origin_shift[i];
+  }
+  return result;
 }
 
 MagneticType magnetic_type(int uni_number) {

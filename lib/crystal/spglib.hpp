@@ -1,11 +1,13 @@
 #pragma once
 
 #include <array>
+#include <cstdint>
 #include <optional>
 #include <span>
 #include <string>
 #include <vector>
 
+#include "crystal/lattice.hpp"
 #include "crystal/operation.hpp"
 
 namespace spinsieve {
@@ -36,6 +38,19 @@ struct TabulatedSetting {
 
 /// The tabulated setting a closed list of operations belongs to, proved by exact transformation.
 std::optional<TabulatedSetting> identify_setting(std::span<const Operation> operations);
+
+/// What the symmetry search reports: x_tabulated = transformation · x + origin_shift, floating, for
+/// the standard setting of the number.
+struct FoundSymmetry {
+  int number = 0;
+  std::array<std::array<double, 3>, 3> transformation;
+  std::array<double, 3> origin_shift;
+};
+
+/// Searches the symmetry of a made-up crystal whose group is the given one: two general orbits,
+/// drawn by the seed, on a primitive cell of metric G. One operation per rotation, primitive axes.
+std::optional<FoundSymmetry> search_symmetry(std::span<const Operation> operations,
+                                             const IntMetric& G, std::uint64_t seed);
 
 /// One type of magnetic space group of the database, by UNI number 1 … 1651.
 struct MagneticType {
