@@ -11,6 +11,7 @@ namespace spinsieve {
 namespace {
 
 constexpr std::size_t most_reflections = 5'000'000;
+constexpr const char* too_many = "more than 5000000 reflections up to the largest Q";
 
 /// Integer test of hkl · T for the centring vectors.
 class ReciprocalLattice {
@@ -68,8 +69,6 @@ double quadratic_form(const Matrix3& metric, const Vector3& h) {
   return sum;
 }
 
-int sign(Fraction value) { return value.is_zero() ? 0 : value.numerator() < 0 ? -1 : 1; }
-
 /// Smaller sorts first: few negative entries, then large ones in order.
 auto nicety(const Reflection& r) {
   const auto negative = std::ranges::count_if(r.hkl, [](int h) { return h < 0; });
@@ -86,19 +85,17 @@ void collect(const Cell& cell, const ReciprocalLattice& lattice, const Matrix3& 
   const double low = std::pow(q_min * (1 - same_q_tolerance) / turn, 2);
   const double high = std::pow(q_max * (1 + same_q_tolerance) / turn, 2);
   const Vector3 lengths = {cell.a(), cell.b(), cell.c()};
+  // One reflection in each reciprocal cell of the integer lattice, were there no centrings.
+  const double expected = 4 * std::numbers::pi / 3 * std::pow(q_max / turn, 3) * cell.volume();
+  if (expected > 8.0 * most_reflections) throw LimitReached(too_many);
   std::array<int, 3> first{};
   std::array<int, 3> last{};
-  double box = 1;
   for (std::size_t i = 0; i < 3; ++i) {
     // h + k_i = Q·a_i/2π, so that |h + k_i| ≤ |Q||a_i|/2π; one more for a cell off symmetry.
     const double reach = q_max * lengths[i] / turn * 1.01 + 1;
-    if (reach > 1e4) throw LimitReached("more than 5000000 reflections up to the largest Q");
     first[i] = static_cast<int>(std::floor(-reach - offset[i].to_double()));
     last[i] = static_cast<int>(std::ceil(reach - offset[i].to_double()));
-    box *= last[i] - first[i] + 1;
   }
-  if (box > 40.0 * most_reflections)
-    throw LimitReached("more than 5000000 reflections up to the largest Q");
   for (int h = first[0]; h <= last[0]; ++h) {
     for (int hk = first[1]; hk <= last[1]; ++hk) {
       for (int l = first[2]; l <= last[2]; ++l) {
@@ -108,10 +105,10 @@ void collect(const Cell& cell, const ReciprocalLattice& lattice, const Matrix3& 
         const double squared = quadratic_form(metric, position);
         if (squared > high || squared < low) continue;
         if (kind != ArmKind::pair) {
-          int leading = sign(Fraction(h) + offset[0]);
-          if (leading == 0) leading = sign(Fraction(hk) + offset[1]);
-          if (leading == 0) leading = sign(Fraction(l) + offset[2]);
-          if (leading <= 0) continue;  // The mate at −Q is kept, and Q = 0 is none.
+          // Exact also in floating point: a component that is 0 has an integer offset.
+          const auto leading = std::ranges::find_if(position, [](double x) { return x != 0; });
+          if (leading == position.end() || *leading < 0)
+            continue;  // The mate at −Q is kept, and Q = 0 is none.
         }
         Reflection& reflection = out.emplace_back();
         reflection.hkl = {h, hk, l};
@@ -119,8 +116,7 @@ void collect(const Cell& cell, const ReciprocalLattice& lattice, const Matrix3& 
         reflection.arm = arm;
         reflection.q = cell.scattering_vector(position);
         reflection.q_length = turn * std::sqrt(squared);
-        if (out.size() > most_reflections)
-          throw LimitReached("more than 5000000 reflections up to the largest Q");
+        if (out.size() > most_reflections) throw LimitReached(too_many);
       }
     }
   }
