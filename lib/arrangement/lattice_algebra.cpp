@@ -59,63 +59,11 @@ void order_basis(FractionMatrix& basis) {
 
 }  // namespace
 
-FractionMatrix to_fractions(const IntMatrix& matrix) {
-  FractionMatrix result;
-  for (std::size_t i = 0; i < 3; ++i)
-    for (std::size_t j = 0; j < 3; ++j) result[i][j] = Fraction(matrix[i][j]);
-  return result;
-}
-
-FractionMatrix transpose(const FractionMatrix& matrix) {
-  FractionMatrix result;
-  for (std::size_t i = 0; i < 3; ++i)
-    for (std::size_t j = 0; j < 3; ++j) result[i][j] = matrix[j][i];
-  return result;
-}
-
-FractionMatrix product(const FractionMatrix& a, const FractionMatrix& b) {
-  FractionMatrix result;
-  for (std::size_t i = 0; i < 3; ++i)
-    for (std::size_t j = 0; j < 3; ++j)
-      for (std::size_t k = 0; k < 3; ++k)
-        if (!a[i][k].is_zero() && !b[k][j].is_zero()) result[i][j] += a[i][k] * b[k][j];
-  return result;
-}
-
-Fraction determinant(const FractionMatrix& m) {
-  return m[0][0] * (m[1][1] * m[2][2] - m[1][2] * m[2][1]) -
-         m[0][1] * (m[1][0] * m[2][2] - m[1][2] * m[2][0]) +
-         m[0][2] * (m[1][0] * m[2][1] - m[1][1] * m[2][0]);
-}
-
-FractionMatrix inverse(const FractionMatrix& m) {
-  const Fraction scale = Fraction(1) / determinant(m);
-  FractionMatrix result;
-  for (std::size_t i = 0; i < 3; ++i) {
-    for (std::size_t j = 0; j < 3; ++j) {
-      const std::size_t a = (j + 1) % 3;
-      const std::size_t b = (j + 2) % 3;
-      const std::size_t c = (i + 1) % 3;
-      const std::size_t d = (i + 2) % 3;
-      result[i][j] = scale * (m[a][c] * m[b][d] - m[a][d] * m[b][c]);
-    }
-  }
-  return result;
-}
-
-FractionVector times(const FractionMatrix& matrix, const FractionVector& column) {
-  FractionVector result;
-  for (std::size_t i = 0; i < 3; ++i)
-    for (std::size_t j = 0; j < 3; ++j)
-      if (!matrix[i][j].is_zero() && !column[j].is_zero()) result[i] += matrix[i][j] * column[j];
-  return result;
-}
-
 bool is_integer(const FractionMatrix& matrix) {
   return std::ranges::all_of(matrix, [](const FractionVector& row) { return is_integer(row); });
 }
 
-IntMatrix to_integers(const FractionMatrix& matrix) {
+IntMatrix exact_integers(const FractionMatrix& matrix) {
   IntMatrix result{};
   for (std::size_t i = 0; i < 3; ++i) {
     for (std::size_t j = 0; j < 3; ++j) {

@@ -6,23 +6,15 @@
 #include <span>
 #include <vector>
 
+#include "crystal/fraction_matrix.hpp"
 #include "crystal/operation.hpp"
 #include "exact/fraction.hpp"
 
 namespace spinsieve {
 
-using FractionMatrix = std::array<FractionVector, 3>;  ///< [row][column].
-
-FractionMatrix to_fractions(const IntMatrix& matrix);
-FractionMatrix transpose(const FractionMatrix& matrix);
-FractionMatrix product(const FractionMatrix& a, const FractionMatrix& b);
-Fraction determinant(const FractionMatrix& matrix);
-/// Throws Error when the determinant is 0.
-FractionMatrix inverse(const FractionMatrix& matrix);
-FractionVector times(const FractionMatrix& matrix, const FractionVector& column);
 bool is_integer(const FractionMatrix& matrix);
 /// REQUIRES: is_integer(matrix); throws Error when an entry does not fit.
-IntMatrix to_integers(const FractionMatrix& matrix);
+IntMatrix exact_integers(const FractionMatrix& matrix);
 
 /// A lattice of rank 3 in rational coordinates, with a right-handed basis of short vectors.
 ///

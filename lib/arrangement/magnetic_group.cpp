@@ -147,7 +147,7 @@ bool reproduces(const PrimitiveMagneticGroup& group, std::span<const PrimedOpera
   const RationalLattice& lattice = reference.group.lattice();
   return std::ranges::all_of(operations, [&](const PrimedOperation& given) {
     const Operation standard = transformed(given.operation, transformation);
-    const auto* element = reference.group.find(to_integers(lattice.in_basis(standard.rotation)));
+    const auto* element = reference.group.find(exact_integers(lattice.in_basis(standard.rotation)));
     if (element == nullptr) return false;
     FractionVector rest = lattice.coordinates(standard.translation) - element->translation;
     if (reference.group.antitranslation()) {
@@ -165,7 +165,7 @@ std::vector<PrimedOperation> parent_operations(const PrimitiveMagneticGroup& gro
   std::vector<PrimedOperation> result;
   for (const auto& element : group.elements()) {
     Operation operation;
-    operation.rotation = to_integers(
+    operation.rotation = exact_integers(
         product(lattice.columns(), product(to_fractions(element.rotation), to_coordinates)));
     operation.translation = lattice.vector(element.translation);
     result.push_back({operation, element.primed});
@@ -202,7 +202,8 @@ Operation transformed(const Operation& operation, const BasisTransformation& tra
   if (!is_integer(R))
     throw Error("operation " + to_string(operation) + " has no integer matrix in the basis " +
                 to_string(transformation));
-  return {to_integers(R), times(inverse_P, operation.apply(transformation.p) - transformation.p)};
+  return {exact_integers(R),
+          times(inverse_P, operation.apply(transformation.p) - transformation.p)};
 }
 
 MagneticGroup MagneticGroup::from_operations(std::span<const PrimedOperation> operations,

@@ -251,7 +251,7 @@ PrimitiveMagneticGroup::PrimitiveMagneticGroup(std::span<const PrimedOperation> 
     if (!is_integer(R))
       throw Error("the rotation of " + to_string(operation) +
                   " does not keep the lattice of unprimed translations");
-    Element element{to_integers(R), lattice_.coordinates(operation.translation), primed};
+    Element element{exact_integers(R), lattice_.coordinates(operation.translation), primed};
     if (primed && antitranslation_) {
       element.primed = false;
       element.translation = element.translation + *antitranslation_;

@@ -189,7 +189,7 @@ std::optional<Operation> in_setting(const Operation& operation, const Setting& s
   const FractionMatrix back = inverse(setting.Q);
   const FractionMatrix R = product(setting.Q, product(to_fractions(operation.rotation), back));
   if (!is_integer(R)) return std::nullopt;
-  Operation result{to_integers(R), {}};
+  Operation result{exact_integers(R), {}};
   result.translation = setting.apply(operation.apply(times(back, vector_of(0, 0, 0) - setting.q)));
   return result;
 }
