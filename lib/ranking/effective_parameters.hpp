@@ -1,0 +1,24 @@
+#pragma once
+
+#include <cstddef>
+
+#include <Eigen/Dense>
+
+#include "ranking/fit_data.hpp"
+#include "ranking/form_family.hpp"
+
+namespace spinsieve {
+
+/// Generic rank of (c, unknown scales) → intensities of lines and absences, c within the
+/// candidate's equalities.
+///
+/// One free scale adds none, each further free scale one when the data can tell it; a measured one
+/// brings its own datum and adds none. Points that are only seen fix nothing.
+/// Cost: a few pivoted decompositions of N × n.
+std::size_t effective_parameters(const FitData& data, const CandidateModel& model);
+
+/// Singular values below this part of the largest are rounding: forms carry 1e-12 at worst, and no
+/// measurement resolves intensities to 1e-7 of the strongest response.
+constexpr double rank_tolerance = 1e-7;
+
+}  // namespace spinsieve
