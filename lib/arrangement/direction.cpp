@@ -265,6 +265,13 @@ class Closure {
   std::size_t dimension_;
 };
 
+/// "e(1/3)*a", with parentheses around a sum.
+std::string product_text(const Cyclotomic& factor, const std::string& name) {
+  const std::string text = to_string(factor);
+  const bool sum = text.find('+') != std::string::npos || text.find('-', 1) != std::string::npos;
+  return (sum ? "(" + text + ")" : text) + "*" + name;
+}
+
 /// "(a,b,-a)": the pattern of amplitudes over the rows.
 std::string direction_text(const ExactMatrix& basis, bool complex_amplitudes) {
   std::string text = "(";
@@ -283,7 +290,7 @@ std::string direction_text(const ExactMatrix& basis, bool complex_amplitudes) {
       else if (factor.is_rational() && factor.rational().is_integer())
         term = to_string(factor) + name;
       else
-        term = to_string(factor) + "*" + name;
+        term = product_text(factor, name);
       if (!entry.empty() && term.front() != '-') entry += "+";
       entry += term;
     }

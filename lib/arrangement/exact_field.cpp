@@ -10,15 +10,16 @@ namespace {
 /// terms of different phases the value is compared with their rounding error.
 constexpr double sum_rounding = 1e-12;
 
-/// Length of the axis along which a parameter's first non-zero component lies.
-double unit_length(const ExactField& field, std::size_t parameter, const Cell& cell) {
-  const std::array<double, 3> lengths{cell.a(), cell.b(), cell.c()};
+/// What one unit of a parameter is in the units of its exact field: the size of its first non-zero
+/// crystal-axis component.
+double parameter_unit(const ExactField& field, std::size_t parameter,
+                      const std::array<double, 3>& lengths) {
   for (const ExactArm& arm : field.arms)
     for (std::size_t j = 0; j < arm.atoms.size(); ++j) {
       const auto moment = value(arm.components[parameter * arm.atoms.size() + j]);
       for (std::size_t i = 0; i < 3; ++i) {
         const double size = arm.self_conjugate ? std::abs(moment[i].real()) : std::abs(moment[i]);
-        if (size > sum_rounding) return lengths[i];
+        if (size > sum_rounding) return size * lengths[i];
       }
     }
   return 1;
@@ -45,7 +46,8 @@ MomentField to_moment_field(const ExactField& field, const Cell& cell) {
   MomentField result;
   result.parameters = field.parameters;
   std::vector<double> unit;
-  for (std::size_t p = 0; p < field.parameters; ++p) unit.push_back(unit_length(field, p, cell));
+  for (std::size_t p = 0; p < field.parameters; ++p)
+    unit.push_back(parameter_unit(field, p, lengths));
   for (const ExactArm& arm : field.arms) {
     FourierField fourier;
     fourier.k = arm.k;
