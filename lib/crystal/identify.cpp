@@ -64,8 +64,14 @@ std::optional<int> coinciding_setting(const OperationSet& set) {
   const auto hall_of = [](int number) {
     return first_hall_numbers()[static_cast<std::size_t>(number - 1)];
   };
-  for (int hall_number = hall_of(first); hall_number < hall_of(end); ++hall_number)
-    if (same_group(set, tabulated_set(hall_number))) return hall_number;
+  const std::size_t size = set.representatives.size() * set.centrings.size();
+  for (int hall_number = hall_of(first); hall_number < hall_of(end); ++hall_number) {
+    const std::vector<Operation> operations = hall_operations(hall_number);
+    if (operations.size() == size &&
+        std::all_of(operations.begin(), operations.end(),
+                    [&set](const Operation& operation) { return set.contains(operation); }))
+      return hall_number;
+  }
   return std::nullopt;
 }
 

@@ -90,7 +90,7 @@ std::vector<std::string> compact_forms(const HallSetting& hall) {
   return forms;
 }
 
-std::vector<Setting> all_settings() {
+std::vector<Setting> read_settings() {
   std::vector<Setting> result;
   for (int hall_number = 1; hall_number <= 530; ++hall_number) {
     HallSetting hall = hall_setting(hall_number);
@@ -99,6 +99,11 @@ std::vector<Setting> all_settings() {
     result.push_back({std::move(hall), std::move(forms), std::move(spaced)});
   }
   return result;
+}
+
+const std::vector<Setting>& all_settings() {
+  static const std::vector<Setting> settings = read_settings();
+  return settings;
 }
 
 /// Smaller for the setting that International Tables A calls standard: origin 2, hexagonal axes,
@@ -218,7 +223,7 @@ SpaceGroup parse_space_group(std::string_view text) {
     throw Error("'" + std::string(text) +
                 "' names no space group; accepted are a number 1 to 230, a Hermann-Mauguin or a "
                 "Hall symbol");
-  const std::vector<Setting> settings = all_settings();
+  const std::vector<Setting>& settings = all_settings();
   int number = 0;
   if (is_number(written.symbol)) {
     number = written.symbol.size() > 3 ? 1000 : std::stoi(written.symbol);
