@@ -2,7 +2,6 @@
 
 #include <algorithm>
 #include <cstdlib>
-#include <limits>
 #include <numeric>
 #include <utility>
 
@@ -58,23 +57,6 @@ void order_basis(FractionMatrix& basis) {
 }
 
 }  // namespace
-
-bool is_integer(const FractionMatrix& matrix) {
-  return std::ranges::all_of(matrix, [](const FractionVector& row) { return is_integer(row); });
-}
-
-IntMatrix exact_integers(const FractionMatrix& matrix) {
-  IntMatrix result{};
-  for (std::size_t i = 0; i < 3; ++i) {
-    for (std::size_t j = 0; j < 3; ++j) {
-      const std::int64_t entry = matrix[i][j].numerator();
-      if (std::abs(entry) > std::numeric_limits<int>::max())
-        throw Error("matrix entry " + to_string(matrix[i][j]) + " does not fit in 32 bits");
-      result[i][j] = static_cast<int>(entry);
-    }
-  }
-  return result;
-}
 
 std::vector<Row> integer_row_basis(std::vector<Row> rows) {
   std::size_t done = 0;

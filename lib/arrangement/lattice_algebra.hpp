@@ -12,10 +12,6 @@
 
 namespace spinsieve {
 
-bool is_integer(const FractionMatrix& matrix);
-/// REQUIRES: is_integer(matrix); throws Error when an entry does not fit.
-IntMatrix exact_integers(const FractionMatrix& matrix);
-
 /// A lattice of rank 3 in rational coordinates, with a right-handed basis of short vectors.
 ///
 /// Short means: reduced pairwise for the metric in which the coordinate axes are orthonormal, so

@@ -147,7 +147,8 @@ bool reproduces(const PrimitiveMagneticGroup& group, std::span<const PrimedOpera
   const RationalLattice& lattice = reference.group.lattice();
   return std::ranges::all_of(operations, [&](const PrimedOperation& given) {
     const Operation standard = transformed(given.operation, transformation);
-    const auto* element = reference.group.find(exact_integers(lattice.in_basis(standard.rotation)));
+    const auto rotation = to_integers(lattice.in_basis(standard.rotation));
+    const auto* element = rotation ? reference.group.find(*rotation) : nullptr;
     if (element == nullptr) return false;
     FractionVector rest = lattice.coordinates(standard.translation) - element->translation;
     if (reference.group.antitranslation()) {
@@ -165,8 +166,10 @@ std::vector<PrimedOperation> parent_operations(const PrimitiveMagneticGroup& gro
   std::vector<PrimedOperation> result;
   for (const auto& element : group.elements()) {
     Operation operation;
-    operation.rotation = exact_integers(
-        product(lattice.columns(), product(to_fractions(element.rotation), to_coordinates)));
+    operation.rotation =
+        to_integers(
+            product(lattice.columns(), product(to_fractions(element.rotation), to_coordinates)))
+            .value();
     operation.translation = lattice.vector(element.translation);
     result.push_back({operation, element.primed});
   }
@@ -197,13 +200,12 @@ std::string to_string(const BasisTransformation& transformation) {
 
 Operation transformed(const Operation& operation, const BasisTransformation& transformation) {
   const FractionMatrix inverse_P = inverse(transformation.P);
-  const FractionMatrix R =
-      product(inverse_P, product(to_fractions(operation.rotation), transformation.P));
-  if (!is_integer(R))
+  const std::optional<IntMatrix> R =
+      to_integers(product(inverse_P, product(to_fractions(operation.rotation), transformation.P)));
+  if (!R)
     throw Error("operation " + to_string(operation) + " has no integer matrix in the basis " +
                 to_string(transformation));
-  return {exact_integers(R),
-          times(inverse_P, operation.apply(transformation.p) - transformation.p)};
+  return {*R, times(inverse_P, operation.apply(transformation.p) - transformation.p)};
 }
 
 MagneticGroup MagneticGroup::from_operations(std::span<const PrimedOperation> operations,

@@ -247,11 +247,11 @@ PrimitiveMagneticGroup::PrimitiveMagneticGroup(std::span<const PrimedOperation> 
 
   elements_.push_back({identity_matrix, {}, false});
   for (const auto& [operation, primed] : operations) {
-    const FractionMatrix R = lattice_.in_basis(operation.rotation);
-    if (!is_integer(R))
+    const std::optional<IntMatrix> R = to_integers(lattice_.in_basis(operation.rotation));
+    if (!R)
       throw Error("the rotation of " + to_string(operation) +
                   " does not keep the lattice of unprimed translations");
-    Element element{exact_integers(R), lattice_.coordinates(operation.translation), primed};
+    Element element{*R, lattice_.coordinates(operation.translation), primed};
     if (primed && antitranslation_) {
       element.primed = false;
       element.translation = element.translation + *antitranslation_;

@@ -187,9 +187,10 @@ struct Setting {
 
 std::optional<Operation> in_setting(const Operation& operation, const Setting& setting) {
   const FractionMatrix back = inverse(setting.Q);
-  const FractionMatrix R = product(setting.Q, product(to_fractions(operation.rotation), back));
-  if (!is_integer(R)) return std::nullopt;
-  Operation result{exact_integers(R), {}};
+  const std::optional<IntMatrix> R =
+      to_integers(product(setting.Q, product(to_fractions(operation.rotation), back)));
+  if (!R) return std::nullopt;
+  Operation result{*R, {}};
   result.translation = setting.apply(operation.apply(times(back, vector_of(0, 0, 0) - setting.q)));
   return result;
 }
