@@ -28,12 +28,12 @@ constexpr std::array<IrrepMatrix::Trace, 24> make_roots() {
 
 constexpr std::array<IrrepMatrix::Trace, 24> roots = make_roots();
 
+}  // namespace
+
 void add_root(IrrepMatrix::Trace& sum, int exponent, int factor) {
   const IrrepMatrix::Trace& root = roots[index(exponent)];
   for (std::size_t i = 0; i < 8; ++i) sum[i] = static_cast<std::int16_t>(sum[i] + factor * root[i]);
 }
-
-}  // namespace
 
 IrrepMatrix IrrepMatrix::identity(int dimension) {
   std::array<std::uint8_t, largest> columns{};

@@ -50,6 +50,8 @@ class IrrepMatrix {
 };
 
 Cyclotomic to_cyclotomic(const IrrepMatrix::Trace& trace);
+/// Adds ζ^exponent; REQUIRES: 0 ≤ exponent < 24.
+void add_root(IrrepMatrix::Trace& sum, int exponent, int factor = 1);
 /// ζ^exponent times the trace.
 IrrepMatrix::Trace times_root(const IrrepMatrix::Trace& trace, int exponent);
 

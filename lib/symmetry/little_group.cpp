@@ -1,6 +1,7 @@
 #include "symmetry/little_group.hpp"
 
 #include <algorithm>
+#include <cstdlib>
 #include <limits>
 #include <numeric>
 #include <stdexcept>
@@ -37,15 +38,24 @@ IntegerWavevector to_integers(const Wavevector& k) {
   };
   include(k.constant);
   for (const FractionVector& row : k.along) include(row);
-  // Products with rotations and small centrings must stay within int.
-  if (denominator > 1'000'000)
+  // Sums over rows of rotations (entries up to 15 in odd axes) must stay within int.
+  constexpr std::int64_t largest_denominator = 1'000'000;
+  constexpr std::int64_t largest_component = 1000;
+  constexpr std::int64_t largest_numerator = 40'000'000;
+  if (denominator > largest_denominator)
     throw Error("the wavevector " + to_string(k) + " has a common denominator of " +
                 std::to_string(denominator) + "; at most 1000000 is accepted");
   result.denominator = static_cast<int>(denominator);
-  const auto scaled = [denominator](const FractionVector& v) {
+  const auto scaled = [&](const FractionVector& v) {
     IntVector row{};
-    for (std::size_t i = 0; i < 3; ++i)
-      row[i] = to_int(checked_multiply(v[i].numerator(), denominator / v[i].denominator()));
+    for (std::size_t i = 0; i < 3; ++i) {
+      const std::int64_t value =
+          checked_multiply(v[i].numerator(), denominator / v[i].denominator());
+      if (std::abs(value) > std::min(largest_numerator, largest_component * denominator))
+        throw Error("the wavevector " + to_string(k) + " has the component " + to_string(v[i]) +
+                    "; take a reciprocal-lattice vector off, so that components lie near 0");
+      row[i] = static_cast<int>(value);
+    }
     return row;
   };
   result.rows[0] = scaled(k.constant);

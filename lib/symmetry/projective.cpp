@@ -44,7 +44,21 @@ std::vector<std::size_t> inverses(const FactorSystem& group) {
   return inverse;
 }
 
-/// A normal subgroup of prime index: maximal among those above the commutator subgroup.
+/// Number of projective irreps of a subgroup, times its order: the sum of the commutator phases
+/// over commuting pairs, which cancel unless an element is regular.
+int irrep_count(const FactorSystem& group, Elements subgroup) {
+  IrrepMatrix::Trace sum{};
+  for_each_element(subgroup, [&](std::size_t a) {
+    for_each_element(subgroup, [&](std::size_t b) {
+      if (group.product(a, b) == group.product(b, a))
+        add_root(sum, root_exponent(group.factor(a, b) - group.factor(b, a)));
+    });
+  });
+  return sum[0];
+}
+
+/// A normal subgroup of prime index: of those above the commutator subgroup one with most irreps,
+/// so that matrices are induced from small ones wherever they can be, and hence monomial.
 Elements normal_subgroup(const FactorSystem& group, const std::vector<std::size_t>& inverse,
                          Elements whole) {
   Elements commutators = 0;
@@ -54,14 +68,22 @@ Elements normal_subgroup(const FactorSystem& group, const std::vector<std::size_
           single(group.product(group.product(a, b), group.product(inverse[a], inverse[b])));
     });
   });
-  Elements result = generated(group, 0, commutators);
-  if (result == whole) throw std::logic_error("a point group that is not solvable");
-  for_each_element(whole, [&](std::size_t x) {
-    if (contains(result, x)) return;
-    const Elements larger = generated(group, result, single(x));
-    if (larger != whole) result = larger;
+  const Elements derived = generated(group, 0, commutators);
+  if (derived == whole) throw std::logic_error("a point group that is not solvable");
+  std::vector<Elements> found;
+  for_each_element(whole & ~derived, [&](std::size_t first) {
+    Elements subgroup = generated(group, derived, single(first));
+    if (subgroup == whole) subgroup = derived;
+    for_each_element(whole & ~subgroup, [&](std::size_t x) {
+      if (contains(subgroup, x)) return;
+      const Elements larger = generated(group, subgroup, single(x));
+      if (larger != whole) subgroup = larger;
+    });
+    if (std::ranges::find(found, subgroup) == found.end()) found.push_back(subgroup);
   });
-  return result;
+  return *std::ranges::max_element(found, {}, [&](Elements subgroup) {
+    return irrep_count(group, subgroup) / std::popcount(subgroup);
+  });
 }
 
 /// One step of the chain: a group H, its normal subgroup N of index p, and H = ∪ x^j N.
