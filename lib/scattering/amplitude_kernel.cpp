@@ -12,7 +12,7 @@
 // The kernel is compiled twice and the better version chosen when the program starts. The address
 // sanitizer cannot run inside such a choice, so it gets the plain version alone.
 #if defined(__x86_64__) && !defined(__SANITIZE_ADDRESS__)
-#define SPINSIEVE_CLONES __attribute__((target_clones("arch=haswell", "default")))
+#define SPINSIEVE_CLONES __attribute__((target_clones("fma", "default")))
 #else
 #define SPINSIEVE_CLONES
 #endif
@@ -24,7 +24,7 @@ constexpr std::size_t lanes = 8;  // reflections carried at a time
 using Lane = double __attribute__((vector_size(lanes / 2 * sizeof(double))));
 
 /// Numbers of eight reflections.
-struct Eight {
+struct alignas(lanes / 2 * sizeof(double)) Eight {
   Lane low{};
   Lane high{};
 };
@@ -87,10 +87,15 @@ SPINSIEVE_CLONES void sum_complex_terms(const Term* terms, std::size_t count, co
     const Eight& pr = phase_re[term.atom];
     const Eight& pi = phase_im[term.atom];
     for (std::size_t i = 0; i < 3; ++i) {
-      sum.re[i].low += pr.low * term.re[i] - pi.low * term.im[i];
-      sum.re[i].high += pr.high * term.re[i] - pi.high * term.im[i];
-      sum.im[i].low += pi.low * term.re[i] + pr.low * term.im[i];
-      sum.im[i].high += pi.high * term.re[i] + pr.high * term.im[i];
+      // One product a statement, so that each becomes a fused multiply-add.
+      sum.re[i].low += pr.low * term.re[i];
+      sum.re[i].high += pr.high * term.re[i];
+      sum.im[i].low += pi.low * term.re[i];
+      sum.im[i].high += pi.high * term.re[i];
+      sum.re[i].low -= pi.low * term.im[i];
+      sum.re[i].high -= pi.high * term.im[i];
+      sum.im[i].low += pr.low * term.im[i];
+      sum.im[i].high += pr.high * term.im[i];
     }
   }
   out = sum;
@@ -166,8 +171,8 @@ class PhaseBlock {
         scatterers_(scatterers),
         field_(field),
         phases_(atom_phases(field, reflections)),
-        weights_(scatterers.size()),
-        lane_weights_(scatterers.size()) {
+        weights_(scatterers.kinds()),
+        lane_weights_(scatterers.kinds()) {
     for (const FieldAtom& atom : field.atoms)
       displacements_.push_back(scatterers.displacement(atom));
   }
@@ -178,22 +183,25 @@ class PhaseBlock {
       const double q = block[lane].q_length;
       if (std::abs(q - weight_q_) > same_q_tolerance * q) {
         weight_q_ = q;
-        for (std::size_t site = 0; site < weights_.size(); ++site)
-          weights_[site] = scatterers_.weight(site, q);
+        for (std::size_t kind = 0; kind < weights_.size(); ++kind)
+          weights_[kind] = scatterers_.kind_weight(kind, q);
       }
-      for (std::size_t site = 0; site < weights_.size(); ++site)
-        lane_weights_[site][lane] = weights_[site];
+      for (std::size_t kind = 0; kind < weights_.size(); ++kind)
+        lane_weights_[kind][lane] = weights_[kind];
     }
     for (std::size_t j = 0; j < phases_.size(); ++j) {
       const AtomPhases& rows = phases_[j];
       const std::size_t site = field_.atoms[j].site;
+      const double occupancy = scatterers_.occupancy(site);
+      const bool anisotropic = scatterers_.anisotropic(site);
+      const std::array<double, lanes>& lane_weights = lane_weights_[scatterers_.kind(site)];
       for (std::size_t lane = 0; lane < block.size(); ++lane) {
         const Reflection& reflection = block[lane];
         const std::complex<double>& x = rows[0][reflection.hkl[0]];
         const std::complex<double>& y = rows[1][reflection.hkl[1]];
         const std::complex<double>& z = rows[2][reflection.hkl[2]];
-        double weight = lane_weights_[site][lane];
-        if (scatterers_.anisotropic(site))
+        double weight = occupancy * lane_weights[lane];
+        if (anisotropic)
           weight *=
               displacements_[j].anisotropic_factor(reciprocal_components(reflection, field_.k));
         // Written out: the library's complex product guards against infinities at a cost.

@@ -20,6 +20,7 @@ class DebyeWaller {
               const Site& site);
 
   bool isotropic() const noexcept { return !beta_; }
+  double b_iso() const noexcept { return b_iso_; }  ///< Å²; 0 when anisotropic.
   /// exp(−B s²); 1 when anisotropic.
   double isotropic_factor(double s) const;
   /// exp(−h β hᵀ), β_ij = 2π² a*_i a*_j U_ij; 1 when isotropic. hkl need not be integers.

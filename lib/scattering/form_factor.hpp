@@ -48,6 +48,11 @@ class FormFactor {
   /// tabulated fits do not give 1 exactly.
   double operator()(double s) const;
   const OrbitalWeight& weight() const noexcept { return weight_; }
+  /// True when both give the same value at every s.
+  bool same_function(const FormFactor& other) const {
+    return j0_ == other.j0_ && weight_.c2 == other.weight_.c2 &&
+           (weight_.c2 == 0 || j2_ == other.j2_);
+  }
 
  private:
   RadialCoefficients j0_{};

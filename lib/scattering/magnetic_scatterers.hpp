@@ -23,6 +23,11 @@ class MagneticScatterers {
 
   /// Occupancy · f(s) · exp(−B s²) of a site at |Q|, Å⁻¹; what is the same for all its atoms.
   double weight(std::size_t site, double q_length) const;
+  /// Sites of one kind share f(s) exp(−B s²); kinds count from 0.
+  std::size_t kinds() const noexcept { return representatives_.size(); }
+  std::size_t kind(std::size_t site) const { return sites_[site].kind; }
+  double kind_weight(std::size_t kind, double q_length) const;  ///< f(s) exp(−B s²).
+  double occupancy(std::size_t site) const { return sites_[site].occupancy; }
   bool anisotropic(std::size_t site) const { return !sites_[site].displacement.isotropic(); }
   /// The displacement of one atom of a site.
   DebyeWaller displacement(const FieldAtom& atom) const;
@@ -33,10 +38,12 @@ class MagneticScatterers {
     FormFactor form_factor;
     DebyeWaller displacement;
     double occupancy;
+    std::size_t kind;
   };
   Cell cell_;
   SpaceGroup group_;
   std::vector<Scatterer> sites_;
+  std::vector<std::size_t> representatives_;  ///< A site of each kind.
 };
 
 }  // namespace spinsieve
