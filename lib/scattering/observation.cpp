@@ -116,7 +116,7 @@ std::vector<Window> computed_absences(const Measurement& measurement, const Refl
 ObservationGroup merged(std::span<const Window> windows, bool& says_nothing) {
   ObservationGroup group;
   group.q_low = windows.front().low;
-  group.kind = MeasuredKind::absence;
+  group.kind = PointKind::absence;
   bool at_least = false;
   bool at_most = false;
   double variance = 0;
@@ -124,7 +124,7 @@ ObservationGroup merged(std::span<const Window> windows, bool& says_nothing) {
     group.q_high = std::max(group.q_high, window.high);
     group.observed += window.observed;
     variance += window.sigma * window.sigma;
-    if (window.is_line) group.kind = MeasuredKind::line;
+    if (window.is_line) group.kind = PointKind::line;
     at_least = at_least || window.at_least;
     at_most = at_most || window.at_most;
     if (window.line) group.lines.push_back(*window.line);
@@ -134,8 +134,8 @@ ObservationGroup merged(std::span<const Window> windows, bool& says_nothing) {
     group.label += (group.label.empty() ? "" : " + ") + window.text;
   }
   group.sigma = std::sqrt(variance);
-  if (at_least) group.kind = MeasuredKind::at_least;
-  if (at_most) group.kind = MeasuredKind::at_most;
+  if (at_least) group.kind = PointKind::at_least;
+  if (at_most) group.kind = PointKind::at_most;
   says_nothing = at_least && at_most;
   return group;
 }
@@ -290,10 +290,10 @@ void ObservationPlan::plan_crystal(const Cell& cell, const SpaceGroup& group,
   const auto fill = [](ObservationGroup& result, const Window& window) {
     result.observed = window.observed;
     result.sigma = window.sigma;
-    result.kind = !window.is_line   ? MeasuredKind::absence
-                  : window.at_least ? MeasuredKind::at_least
-                  : window.at_most  ? MeasuredKind::at_most
-                                    : MeasuredKind::line;
+    result.kind = !window.is_line   ? PointKind::absence
+                  : window.at_least ? PointKind::at_least
+                  : window.at_most  ? PointKind::at_most
+                                    : PointKind::line;
   };
   for (std::size_t i = 0; i < measurement.lines.size(); ++i) {
     const ObservedLine& line = measurement.lines[i];
@@ -313,11 +313,10 @@ void ObservationPlan::plan_crystal(const Cell& cell, const SpaceGroup& group,
   }
 }
 
-std::vector<MeasuredPoint> data_points(const ObservationPlan& plan,
-                                       const MagneticScatterers& scatterers,
-                                       const MomentField& field) {
+std::vector<DataPoint> data_points(const ObservationPlan& plan,
+                                   const MagneticScatterers& scatterers, const MomentField& field) {
   const Eigen::Index n = static_cast<Eigen::Index>(field.parameters);
-  std::vector<MeasuredPoint> points;
+  std::vector<DataPoint> points;
   std::vector<std::size_t> lines;
   std::vector<std::size_t> line_point;
   std::vector<Reflection> reflections;

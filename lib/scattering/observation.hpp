@@ -14,7 +14,7 @@
 namespace spinsieve {
 
 /// What a data point says of the computed intensity I of its group.
-enum class MeasuredKind {
+enum class PointKind {
   line,      ///< I = observed ± sigma.
   absence,   ///< I = 0 ± sigma, sigma = below/1.645.
   at_least,  ///< Only seen: I ≥ observed, with sigma below it.
@@ -33,7 +33,7 @@ struct DomainReflection {
 
 /// Entries of a measurement whose windows overlap, and the computed lines inside.
 struct ObservationGroup {
-  MeasuredKind kind = MeasuredKind::line;
+  PointKind kind = PointKind::line;
   double observed = 0;  ///< Sum over the entries; 0 for absences.
   double sigma = 0;     ///< Entries added in quadrature.
   double q_low = 0;     ///< Å⁻¹.
@@ -84,18 +84,17 @@ class ObservationPlan {
 };
 
 /// One point for the ranking: I = scale · cᵀ form c.
-struct MeasuredPoint {
+struct DataPoint {
   Eigen::MatrixXd form;  ///< n×n, symmetric, positive semidefinite: barn times Lorentz factor.
   double observed = 0;
   double sigma = 0;
-  MeasuredKind kind = MeasuredKind::line;
+  PointKind kind = PointKind::line;
   std::size_t group = 0;  ///< Into ObservationPlan::groups(), with label and contents.
 };
 
 /// The points of one candidate, one a group, in order. Every arm of the field must be among the
 /// plan's (std::logic_error otherwise).
-std::vector<MeasuredPoint> data_points(const ObservationPlan& plan,
-                                       const MagneticScatterers& scatterers,
-                                       const MomentField& field);
+std::vector<DataPoint> data_points(const ObservationPlan& plan,
+                                   const MagneticScatterers& scatterers, const MomentField& field);
 
 }  // namespace spinsieve

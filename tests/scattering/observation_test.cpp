@@ -80,7 +80,7 @@ TEST(ObservationPlanTest, OverlappingWindowsMergeAndAdd) {
   EXPECT_EQ(first.label, "q 1.570 + q 1.578");
   const ObservationGroup& second = plan.groups()[1];
   EXPECT_THAT(second.absences, ElementsAre(0));
-  EXPECT_EQ(second.kind, MeasuredKind::line);
+  EXPECT_EQ(second.kind, PointKind::line);
   EXPECT_NEAR(second.sigma, std::hypot(2, 2), 1e-12);  // 3.29/1.645 = 2
   // (0 0 1) lies below both windows and nobody looked there.
   ASSERT_EQ(plan.unmeasured().size(), 1U);
@@ -95,11 +95,11 @@ TEST(ObservationPlanTest, ScannedRangesTurnUnlistedLinesIntoAbsences) {
   const ObservationPlan plan(t.cell, t.group, t.arms, m);
   // In 1.0 … 2.3: (0 0 1) 1.257, (1 0 0) 1.571 listed, (1 0 1) 2.012, (1 1 0) 2.221.
   ASSERT_EQ(plan.groups().size(), 4U);
-  EXPECT_EQ(plan.groups()[0].kind, MeasuredKind::absence);
+  EXPECT_EQ(plan.groups()[0].kind, PointKind::absence);
   EXPECT_EQ(plan.groups()[0].contents, "(0 0 1) ×2");
   EXPECT_EQ(plan.groups()[0].label, "scanned, (0 0 1) ×2");
   EXPECT_NEAR(plan.groups()[0].sigma, 4, 1e-12);
-  EXPECT_EQ(plan.groups()[1].kind, MeasuredKind::line);
+  EXPECT_EQ(plan.groups()[1].kind, PointKind::line);
   EXPECT_EQ(plan.groups()[2].contents, "(1 0 1) ×8");
   EXPECT_EQ(plan.groups()[3].contents, "(1 1 0) ×4");
   EXPECT_THAT(plan.unmeasured(), IsEmpty());
@@ -130,10 +130,10 @@ TEST(ObservationPlanTest, OneSidedPoints) {
   m.lines = {seen, foreign, useless};
   const ObservationPlan plan(t.cell, t.group, t.arms, m);
   ASSERT_EQ(plan.groups().size(), 2U);
-  EXPECT_EQ(plan.groups()[0].kind, MeasuredKind::at_least);
+  EXPECT_EQ(plan.groups()[0].kind, PointKind::at_least);
   EXPECT_NEAR(plan.groups()[0].observed, 16.45, 1e-12);
   EXPECT_NEAR(plan.groups()[0].sigma, 10, 1e-12);
-  EXPECT_EQ(plan.groups()[1].kind, MeasuredKind::at_most);
+  EXPECT_EQ(plan.groups()[1].kind, PointKind::at_most);
   EXPECT_EQ(plan.unmeasured().size(), 1U);
 }
 
