@@ -76,8 +76,8 @@ std::size_t effective_parameters(const FitData& data, const CandidateModel& mode
     const Eigen::Index n = tangent.cols();
     Eigen::MatrixXd jacobian = Eigen::MatrixXd::Zero(forms.size() + measured_slots, n + slots);
     for (Eigen::Index s = 0; s < forms.size(); ++s) {
-      const DataPoint& point = data.points()[static_cast<std::size_t>(s)];
-      if (point.kind == PointKind::seen_above || !(norms(s) > extinct_form * largest)) continue;
+      const MeasuredPoint& point = data.points()[static_cast<std::size_t>(s)];
+      if (is_one_sided(point.kind) || !(norms(s) > extinct_form * largest)) continue;
       jacobian.row(s).head(n).noalias() = slopes.row(s) * tangent / norms(s);
       const std::optional<std::size_t>& slot = slot_of[point.scale_group];
       if (slot)

@@ -13,7 +13,7 @@ namespace spinsieve {
 /// candidate's equalities.
 ///
 /// One free scale adds none, each further free scale one when the data can tell it; a measured one
-/// brings its own datum and adds none. Points that are only seen fix nothing.
+/// brings its own datum and adds none. One-sided points fix nothing.
 /// Cost: a few pivoted decompositions of N × n.
 std::size_t effective_parameters(const FitData& data, const CandidateModel& model);
 

@@ -154,7 +154,7 @@ double chi_squared(const FitData& data, const FormFamily& forms, const Eigen::Ve
   Eigen::VectorXd residual = forms.intensities(c);
   std::vector<char> in_block(data.points().size(), 0);
   for (Eigen::Index s = 0; s < residual.size(); ++s) {
-    const DataPoint& point = data.points()[static_cast<std::size_t>(s)];
+    const MeasuredPoint& point = data.points()[static_cast<std::size_t>(s)];
     residual(s) = residual(s) * scales[point.scale_group] - point.observed;
   }
   double result = 0;
@@ -166,9 +166,11 @@ double chi_squared(const FitData& data, const FormFamily& forms, const Eigen::Ve
   }
   for (std::size_t i = 0; i < data.points().size(); ++i) {
     if (in_block[i] != 0) continue;
-    const DataPoint& point = data.points()[i];
+    const MeasuredPoint& point = data.points()[i];
     const double deviation = residual(static_cast<Eigen::Index>(i)) / point.sigma;
-    if (point.kind != PointKind::seen_above || deviation < 0) result += deviation * deviation;
+    if (point.kind == PointKind::at_least && deviation > 0) continue;
+    if (point.kind == PointKind::at_most && deviation < 0) continue;
+    result += deviation * deviation;
   }
   for (std::size_t g = 0; g < data.scales().size(); ++g) {
     const ScaleGroup& scale = data.scales()[g];

@@ -11,11 +11,11 @@ namespace {
 /// Relative asymmetry of a covariance that is still rounding of the numbers in the user's file.
 constexpr double symmetry_tolerance = 1e-9;
 
-std::string name(const DataPoint& point, std::size_t index) {
+std::string name(const MeasuredPoint& point, std::size_t index) {
   return point.label.empty() ? "point " + std::to_string(index + 1) : "\"" + point.label + "\"";
 }
 
-void check_point(const DataPoint& point, std::size_t index, std::size_t groups) {
+void check_point(const MeasuredPoint& point, std::size_t index, std::size_t groups) {
   if (!std::isfinite(point.observed))
     throw Error("intensity of " + name(point, index) + " is not finite; it must be a number");
   if (!(point.sigma > 0) || !std::isfinite(point.sigma))
@@ -36,7 +36,7 @@ void check_scale(const ScaleGroup& scale) {
                 " of a measured scale; it must be positive and finite");
 }
 
-void check_block(const CovarianceBlock& block, const std::vector<DataPoint>& points,
+void check_block(const CovarianceBlock& block, const std::vector<MeasuredPoint>& points,
                  std::vector<char>& used) {
   const auto size = static_cast<Eigen::Index>(block.points.size());
   if (size == 0 || block.covariance.rows() != size || block.covariance.cols() != size)
@@ -49,8 +49,8 @@ void check_block(const CovarianceBlock& block, const std::vector<DataPoint>& poi
                   std::to_string(points.size()));
     if (used[p] != 0) throw Error(name(points[p], p) + " is in two covariances; one is allowed");
     used[p] = 1;
-    if (points[p].kind == PointKind::seen_above)
-      throw Error(name(points[p], p) + " is only seen; a covariance needs a measured intensity");
+    if (is_one_sided(points[p].kind))
+      throw Error(name(points[p], p) + " is one-sided; a covariance needs a measured intensity");
     if (points[p].scale_group != points[block.points.front()].scale_group)
       throw Error(name(points[p], p) + " has another scale than the rest of its covariance");
   }
@@ -65,7 +65,7 @@ void check_block(const CovarianceBlock& block, const std::vector<DataPoint>& poi
 
 }  // namespace
 
-FitData::FitData(std::vector<DataPoint> points, std::vector<ScaleGroup> scales,
+FitData::FitData(std::vector<MeasuredPoint> points, std::vector<ScaleGroup> scales,
                  std::vector<CovarianceBlock> blocks)
     : points_(std::move(points)), scales_(std::move(scales)), blocks_(std::move(blocks)) {
   for (std::size_t i = 0; i < points_.size(); ++i) check_point(points_[i], i, scales_.size());

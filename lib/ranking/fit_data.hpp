@@ -6,23 +6,24 @@
 
 #include <Eigen/Dense>
 
+#include "scattering/observation.hpp"
+
 namespace spinsieve {
 
-/// What a measured point says about the computed intensity I of its window.
-enum class PointKind {
-  line,       ///< I = observed ± sigma.
-  absence,    ///< I = 0 ± sigma; an upper limit at 95 % enters with sigma = limit/1.645.
-  seen_above  ///< I ≥ observed; only a shortfall counts, in units of sigma.
-};
-
-/// One measured number; intensity and sigma in the unit of the list it comes from.
-struct DataPoint {
+/// One measured number and what it says of the computed intensity; both numbers in the unit of the
+/// list it comes from.
+struct MeasuredPoint {
   double observed = 0;
   double sigma = 0;  ///< > 0.
   PointKind kind = PointKind::line;
   std::size_t scale_group = 0;  ///< Which scale multiplies its computed intensity.
   std::string label;            ///< For tables and certificates.
 };
+
+/// Whether only deviations in one direction count.
+constexpr bool is_one_sided(PointKind kind) {
+  return kind == PointKind::at_least || kind == PointKind::at_most;
+}
 
 /// Joint errors of points that overlap; replaces their sigma.
 struct CovarianceBlock {
@@ -53,10 +54,11 @@ class FitData {
   FitData() = default;
 
   /// Throws Error for a value that breaks the invariant; quotes the point's label.
-  explicit FitData(std::vector<DataPoint> points, std::vector<ScaleGroup> scales = {ScaleGroup{}},
+  explicit FitData(std::vector<MeasuredPoint> points,
+                   std::vector<ScaleGroup> scales = {ScaleGroup{}},
                    std::vector<CovarianceBlock> blocks = {});
 
-  const std::vector<DataPoint>& points() const noexcept { return points_; }
+  const std::vector<MeasuredPoint>& points() const noexcept { return points_; }
   const std::vector<ScaleGroup>& scales() const noexcept { return scales_; }
   const std::vector<CovarianceBlock>& blocks() const noexcept { return blocks_; }
 
@@ -73,7 +75,7 @@ class FitData {
   Eigen::MatrixXd covariance() const;
 
  private:
-  std::vector<DataPoint> points_;
+  std::vector<MeasuredPoint> points_;
   std::vector<ScaleGroup> scales_;
   std::vector<CovarianceBlock> blocks_;
   bool relative_ = true;

@@ -154,8 +154,11 @@ void ReducedProblem::add_rows(const FitData& data, const CandidateModel& model) 
   }
   for (std::size_t i = 0; i < count; ++i) {
     if (in_block[i] != 0) continue;
-    packed.col(static_cast<Eigen::Index>(i)) /= data.points()[i].sigma;
-    target(static_cast<Eigen::Index>(i)) /= data.points()[i].sigma;
+    // "At most" is "at least" of the opposite sign.
+    const bool at_most = data.points()[i].kind == PointKind::at_most;
+    const double unit = at_most ? -data.points()[i].sigma : data.points()[i].sigma;
+    packed.col(static_cast<Eigen::Index>(i)) /= unit;
+    target(static_cast<Eigen::Index>(i)) /= unit;
   }
   for (int slot = -1; slot < static_cast<int>(slots_.size()); ++slot) {
     std::vector<Eigen::Index> measured;
@@ -163,7 +166,7 @@ void ReducedProblem::add_rows(const FitData& data, const CandidateModel& model) 
     for (std::size_t i = 0; i < count; ++i) {
       const std::optional<std::size_t>& own = slot_of[data.points()[i].scale_group];
       if ((own ? static_cast<int>(*own) : -1) != slot) continue;
-      const bool one_sided = data.points()[i].kind == PointKind::seen_above;
+      const bool one_sided = is_one_sided(data.points()[i].kind);
       (one_sided ? seen : measured).push_back(static_cast<Eigen::Index>(i));
     }
     if (!measured.empty()) compress(packed(Eigen::all, measured), target(measured), slot);

@@ -38,7 +38,7 @@ inline CandidateModel model_of(const std::vector<Eigen::MatrixXd>& forms) {
 /// Points with these values and sigmas, one free scale unless told otherwise.
 inline FitData data_of(const std::vector<double>& observed, const std::vector<double>& sigma,
                        std::vector<ScaleGroup> scales = {ScaleGroup{}}) {
-  std::vector<DataPoint> points(observed.size());
+  std::vector<MeasuredPoint> points(observed.size());
   for (std::size_t i = 0; i < points.size(); ++i) {
     points[i].observed = observed[i];
     points[i].sigma = sigma[i];

@@ -36,9 +36,9 @@ Eigen::MatrixXd matrix(Eigen::Index n, std::initializer_list<double> entries) {
 double plain_chi2(const FitData& data, const CandidateModel& model, const Eigen::VectorXd& c) {
   double sum = 0;
   for (Eigen::Index s = 0; s < model.forms.size(); ++s) {
-    const DataPoint& point = data.points()[static_cast<std::size_t>(s)];
+    const MeasuredPoint& point = data.points()[static_cast<std::size_t>(s)];
     const double deviation = (c.dot(model.forms.form(s) * c) - point.observed) / point.sigma;
-    if (point.kind != PointKind::seen_above || deviation < 0) sum += deviation * deviation;
+    if (point.kind != PointKind::at_least || deviation < 0) sum += deviation * deviation;
   }
   return sum;
 }
@@ -90,12 +90,12 @@ TEST(FitTest, DerivativesAgreeWithFiniteDifferences) {
     CandidateModel model = model_of(random_forms(random, n, points));
     model.limits.push_back({cases::random_form(random, n, n), 0.5});
     model.equalities.push_back(cases::random_form(random, n, 1) - cases::random_form(random, n, 1));
-    std::vector<DataPoint> list(points);
+    std::vector<MeasuredPoint> list(points);
     for (std::size_t i = 0; i < points; ++i) {
       list[i].observed = 3 + 2 * random.normal();
       list[i].sigma = 0.5 + random.uniform();
       list[i].scale_group = i % 3;
-      if (i % 4 == 3) list[i].kind = PointKind::seen_above;
+      if (i % 4 == 3) list[i].kind = PointKind::at_least;
     }
     const FitData data(list, {{ScaleKnowledge::fixed, 1.5, 0},
                               {ScaleKnowledge::free, 1, 0},
@@ -135,11 +135,11 @@ TEST(FitTest, ReductionKeepsChiSquareOfEveryParameterVector) {
     const Eigen::Index n = 1 + static_cast<Eigen::Index>(trial % 4);
     const std::size_t points = 1 + trial;  // below and above the number of products
     const CandidateModel model = model_of(random_forms(random, n, points));
-    std::vector<DataPoint> list(points);
-    for (DataPoint& point : list) {
+    std::vector<MeasuredPoint> list(points);
+    for (MeasuredPoint& point : list) {
       point.observed = random.normal();
       point.sigma = 0.5 + random.uniform();
-      if (random.uniform() < 0.2) point.kind = PointKind::seen_above;
+      if (random.uniform() < 0.2) point.kind = PointKind::at_least;
     }
     const FitData data(list);
     const ReducedProblem problem(data, model);
@@ -173,7 +173,7 @@ TEST(FitTest, DenseScanFindsNothingBelowTheMinimum) {
       double with_data = 0;
       double with_itself = 0;
       for (Eigen::Index s = 0; s < model.forms.size(); ++s) {
-        const DataPoint& point = data.points()[static_cast<std::size_t>(s)];
+        const MeasuredPoint& point = data.points()[static_cast<std::size_t>(s)];
         const double q = u.dot(model.forms.form(s) * u) / point.sigma;
         with_data += q * point.observed / point.sigma;
         with_itself += q * q;
@@ -271,10 +271,10 @@ TEST(FitTest, UndeterminedAndZeroAreToldApartWhereTheyMeet) {
 TEST(FitTest, CovarianceBlocksEnterAsTheInverseMatrix) {
   // By hand: I = (c², c²), y = (1, 3), C = [[2, 1], [1, 2]]: by symmetry x = 2 and the residual
   // (−1, 1)·x has C⁻¹ eigenvalue 1/(2 − 1): χ² = 2.
-  DataPoint first;
+  MeasuredPoint first;
   first.observed = 1;
   first.sigma = std::sqrt(2);
-  DataPoint second = first;
+  MeasuredPoint second = first;
   second.observed = 3;
   const FitData data({first, second}, {ScaleGroup{}}, {{{0, 1}, matrix(2, {2, 1, 1, 2})}});
   const Fit result = fit(data, model_of({matrix(1, {1}), matrix(1, {1})}));
@@ -284,7 +284,7 @@ TEST(FitTest, CovarianceBlocksEnterAsTheInverseMatrix) {
 
 TEST(FitTest, SecondListHasItsOwnFactor) {
   // By hand: the same two forms seen in two lists, the second five times stronger.
-  std::vector<DataPoint> points(4);
+  std::vector<MeasuredPoint> points(4);
   const double values[] = {4, 9, 20, 45};
   for (std::size_t i = 0; i < 4; ++i) {
     points[i].observed = values[i];
@@ -302,8 +302,8 @@ TEST(FitTest, SecondListHasItsOwnFactor) {
 
 TEST(FitTest, MeasuredScalePassesItsErrorOn) {
   // By hand: y = k c² = 8 ± 0.01 with k = 2 ± 0.2: c² = 4, sigma(c²)/c² ≈ 0.1.
-  std::vector<DataPoint> points(2);
-  for (DataPoint& point : points) {
+  std::vector<MeasuredPoint> points(2);
+  for (MeasuredPoint& point : points) {
     point.observed = 8;
     point.sigma = 0.01;
   }
@@ -339,12 +339,12 @@ TEST(FitTest, EqualMomentsAreEqual) {
 }
 
 TEST(FitTest, SeenLinesCountOnlyTheirShortfall) {
-  std::vector<DataPoint> points(2);
+  std::vector<MeasuredPoint> points(2);
   points[0].observed = 4;
   points[0].sigma = 1;
   points[1].observed = 6;
   points[1].sigma = 1;
-  points[1].kind = PointKind::seen_above;
+  points[1].kind = PointKind::at_least;
   // By hand: I = (c², c²): shortfall 6 − x counts until 6: (x − 4)² + (6 − x)², x = 5, χ² = 2.
   EXPECT_NEAR(fit(FitData(points), model_of({matrix(1, {1}), matrix(1, {1})})).chi2, 2, 1e-9);
   // With I₂ = 3c² the line is seen at x = 4 already.
