@@ -72,8 +72,13 @@ void parse_component(std::string_view text, std::size_t i, Wavevector& k) {
                  " is not a component of a wavevector; accepted are 1/2, 0.25, u, 1/2-u, 2u");
   };
   std::string compact;
-  for (const char c : text)
+  bool gap = false;  // A blank between two characters of one number joins nothing.
+  const auto is_digit = [](char c) { return (c >= '0' && c <= '9') || c == '.'; };
+  for (const char c : text) {
+    if (c != ' ' && gap && !compact.empty() && is_digit(compact.back()) && is_digit(c)) throw bad();
     if (c != ' ') compact += c;
+    gap = c == ' ';
+  }
   if (compact.empty()) throw bad();
   std::size_t start = 0;
   while (start < compact.size()) {
@@ -85,7 +90,14 @@ void parse_component(std::string_view text, std::size_t i, Wavevector& k) {
     start = end;
     const std::size_t name = parameter_names.find(term.back());
     if (name == std::string_view::npos) {
-      k.constant[i] += parse_fraction(term);
+      Fraction number;
+      try {
+        number = parse_fraction(term);
+      } catch (const Error& fault) {
+        if (fault.message().find("zero denominator") != std::string::npos) throw;
+        throw bad();
+      }
+      k.constant[i] += number;
       continue;
     }
     term.pop_back();
