@@ -30,6 +30,10 @@ class SymmetryTables {
   /// primitive_denominator(): equal exactly for equivalent k.
   IntVector reduced(const IntVector& k, int k_denominator) const;
   int primitive_denominator() const noexcept { return primitive_denominator_; }
+  /// Rows: a basis of the primitive lattice times primitive_denominator().
+  const std::array<IntVector, 3>& primitive_rows() const noexcept { return primitive_; }
+  /// Columns: the reciprocal basis dual to it, in conventional reciprocal components.
+  const IntMatrix& reciprocal_basis() const noexcept { return inverse_primitive_; }
   /// Inverse of reduced(): a k in the conventional reciprocal basis, exact.
   FractionVector conventional(const IntVector& reduced_k, int k_denominator) const;
   /// Between components on the primitive and the conventional reciprocal basis, not reduced.

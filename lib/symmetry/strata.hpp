@@ -32,6 +32,27 @@ std::vector<Stratum> strata(const SymmetryTables& tables);
 /// parameters, all of its k).
 bool lies_on(const SymmetryTables& tables, const Wavevector& k, const Stratum& stratum);
 
+/// A stratum of higher symmetry that a small change of k would reach.
+struct NearbyStratum {
+  std::size_t stratum = 0;  ///< Index in the list of strata.
+  Wavevector k;             ///< The nearest k of it, no free parameters.
+  FractionVector change{};  ///< k of it minus the given one, conventional components.
+};
+
+/// Where a k lies among the strata of a group.
+struct StratumPosition {
+  std::size_t own = 0;                ///< The stratum whose generic symmetry is that of k.
+  std::vector<std::size_t> lies_on;   ///< All strata that hold k, its own among them.
+  std::vector<NearbyStratum> nearby;  ///< By the largest component of the change, smallest first.
+};
+
+/// The strata a k lies on, and those of higher symmetry within reach: whose nearest k differs by
+/// less than `reach` in each conventional component. Nearest holds in every metric the group
+/// allows, since the change is a projection that commutes with the stratum's rotations.
+/// `list` is strata(tables). Throws Error unless k has no free parameters and 0 ≤ reach ≤ 1/4.
+StratumPosition stratum_position(const SymmetryTables& tables, const Wavevector& k,
+                                 std::span<const Stratum> list, Fraction reach);
+
 const char* to_string(StratumKind kind);  ///< "point", "line", "plane", "general".
 
 }  // namespace spinsieve
