@@ -21,6 +21,7 @@ class NuclearScatterers {
                     std::span<const NuclearSite> other_sites);
 
   /// F_N = Σ b T exp(2πi hkl·r) over one conventional cell, fm; b = b' − i b″.
+  /// REQUIRES: hkl is a reciprocal-lattice vector, centring respected.
   std::complex<double> structure_factor(const std::array<int, 3>& hkl) const;
 
   /// |F_N|² summed over a powder line, multiplicity in, barn per conventional cell. Only the
