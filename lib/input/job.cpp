@@ -73,8 +73,8 @@ Job read(TextFile file) {
   require_version(root);
   const Fields fields(root, "the job", top_keys);
   if (const Node* title = fields.find("title")) job.title = trimmed(text_of(*title, "title"));
-  read_crystal(fields.require("crystal"), folder, job);
-  read_sites(fields, job);
+  const std::optional<CifStructure> cif = read_crystal(fields.require("crystal"), folder, job);
+  read_sites(fields, cif ? &*cif : nullptr, job);
   if (const Node* node = fields.find("modulation")) {
     constexpr std::array<std::string_view, 3> words{"auto", "commensurate", "incommensurate"};
     constexpr std::array<Modulation, 3> values{Modulation::automatic, Modulation::commensurate,

@@ -44,19 +44,42 @@ std::string setting_note(const SpaceGroup& group) {
   return text;
 }
 
+CifStructure structure_of(const Node& node, const std::filesystem::path& folder, Job& job) {
+  const std::string& path = text_of(node, "cif");
+  try {
+    CifStructure structure = read_cif((folder / path).string());
+    job.group = structure.group;
+    job.cell = structure.cell;
+    job.cell_given = true;
+    job.notes.push_back({structure.group_place, setting_note(job.group)});
+    for (const std::string& note : structure.notes) job.notes.push_back({node.place, note});
+    return structure;
+  } catch (const Error& fault) {
+    if (fault.place().line() > 0) throw;
+    throw Error(node.place, in_quotes(path) + " " + fault.message() +
+                                "; accepted is a CIF, its path relative to the job's folder");
+  }
+}
+
 }  // namespace
 
-void read_crystal(const Node& node, const std::filesystem::path& /*folder*/, Job& job) {
+std::optional<CifStructure> read_crystal(const Node& node, const std::filesystem::path& folder,
+                                         Job& job) {
   constexpr std::array<std::string_view, 3> keys{"space_group", "cell", "cif"};
   const Fields fields(node, "crystal", keys);
-  if (fields.has("cif"))
-    throw Error(fields.key_place("cif"),
-                "the key 'cif' of crystal is not acted on yet; give space_group and cell");
+  if (const Node* path = fields.find("cif")) {
+    for (const std::string_view key : {"space_group", "cell"})
+      if (fields.has(key))
+        throw Error(fields.key_place(key), in_quotes(key) +
+                                               " beside 'cif' in crystal; accepted is either a CIF "
+                                               "or space_group and cell");
+    return structure_of(*path, folder, job);
+  }
   const Node& group = fields.require("space_group");
   job.group = space_group_of(group);
   job.notes.push_back({group.place, setting_note(job.group)});
   const Node* cell = fields.find("cell");
-  if (cell == nullptr) return;
+  if (cell == nullptr) return std::nullopt;
   job.cell = cell_of(*cell);
   job.cell_given = true;
   try {
@@ -64,6 +87,7 @@ void read_crystal(const Node& node, const std::filesystem::path& /*folder*/, Job
   } catch (const Error& fault) {
     throw fault.at(cell->place);
   }
+  return std::nullopt;
 }
 
 }  // namespace spinsieve

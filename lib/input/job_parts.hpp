@@ -1,8 +1,11 @@
 #pragma once
 
 #include <filesystem>
+#include <optional>
 #include <string>
+#include <vector>
 
+#include "input/cif.hpp"
 #include "input/fields.hpp"
 #include "input/job.hpp"
 
@@ -10,8 +13,11 @@ namespace spinsieve {
 
 /// Parts of the job file, each read into the job by a source file of its own, in this order: later
 /// parts use what earlier ones found.
-void read_crystal(const Node& node, const std::filesystem::path& folder, Job& job);
-void read_sites(const Fields& root, Job& job);
+std::optional<CifStructure> read_crystal(const Node& node, const std::filesystem::path& folder,
+                                         Job& job);
+/// cif: where the crystal came from, or nullptr. Its atoms that are not named in the job become
+/// other sites.
+void read_sites(const Fields& root, const CifStructure* cif, Job& job);
 void read_propagation(const Node& node, Job& job);
 void read_measurements(const Node& node, const std::filesystem::path& folder, Job& job);
 void read_arrangement(const Node& node, Job& job);

@@ -1,16 +1,39 @@
 #include <algorithm>
 #include <array>
-#include <cmath>
+#include <string>
+#include <vector>
 
 #include "input/job_parts.hpp"
+#include "input/spots.hpp"
 
 namespace spinsieve {
 
 namespace {
 
-Displacement displacement_of(const Fields& fields) {
+bool is_positive_definite(const std::array<double, 6>& u) {
+  const double minor = u[0] * u[1] - u[3] * u[3];
+  const double whole =
+      u[2] * minor - u[0] * u[5] * u[5] - u[1] * u[4] * u[4] + 2 * u[3] * u[4] * u[5];
+  return u[0] > 0 && u[1] > 0 && u[2] > 0 && minor > 0 && whole > 0;
+}
+
+/// What a CIF says of an atom, checked.
+Displacement displacement_of(const CifAtom& atom) {
+  Displacement result;
+  result.u_ij = atom.u_ij;
+  if (atom.u_ij && !is_positive_definite(*atom.u_ij))
+    throw Error(atom.place, "the U_ij of " + atom.label + " are not positive definite");
+  if (atom.b_iso && !atom.u_ij) result.b_iso = *atom.b_iso;
+  if (!(result.b_iso >= 0))
+    throw Error(atom.place, "the B of " + atom.label + " is " + short_text(result.b_iso) +
+                                " Å²; accepted is a number from 0");
+  return result;
+}
+
+Displacement displacement_of(const Fields& fields, const CifAtom* atom) {
   constexpr std::array<std::string_view, 2> keys{"b_iso", "u_ij"};
   fields.at_most_one(keys);
+  if (atom != nullptr && fields.present(keys).empty()) return displacement_of(*atom);
   Displacement result;
   if (const Node* node = fields.find("b_iso"))
     result.b_iso = number_of(*node, "b_iso", {.at_least = 0, .at_most = 100, .unit = "Å²"});
@@ -19,10 +42,7 @@ Displacement displacement_of(const Fields& fields) {
     std::array<double, 6> u{};
     for (std::size_t i = 0; i < 6; ++i)
       u[i] = number_of(items[i], "u_ij", {.at_least = -10, .at_most = 10, .unit = "Å²"});
-    const double minor = u[0] * u[1] - u[3] * u[3];
-    const double whole =
-        u[2] * minor - u[0] * u[5] * u[5] - u[1] * u[4] * u[4] + 2 * u[3] * u[4] * u[5];
-    if (!(u[0] > 0 && u[1] > 0 && u[2] > 0 && minor > 0 && whole > 0))
+    if (!is_positive_definite(u))
       throw Error(
           node->place,
           "u_ij is not positive definite, so that an amplitude would be imaginary; accepted "
@@ -32,9 +52,14 @@ Displacement displacement_of(const Fields& fields) {
   return result;
 }
 
-double occupancy_of(const Fields& fields) {
-  const Node* node = fields.find("occupancy");
-  return node == nullptr ? 1 : number_of(*node, "occupancy", {.above = 0, .at_most = 1});
+double occupancy_of(const Fields& fields, const CifAtom* atom) {
+  if (const Node* node = fields.find("occupancy"))
+    return number_of(*node, "occupancy", {.above = 0, .at_most = 1});
+  if (atom == nullptr) return 1;
+  if (!(atom->occupancy > 0))
+    throw Error(atom->place, "the occupancy of " + atom->label +
+                                 " is 0; accepted is a number above 0 and up to 1");
+  return atom->occupancy;
 }
 
 RadialCoefficients coefficients_of(const Node& node, std::string_view what) {
@@ -82,7 +107,48 @@ void offer_fractions(const Node& position, const std::string& label, Job& job) {
   }
 }
 
-Site site_of(const Fields& fields, Job& job) {
+const CifAtom* find_atom(const CifStructure* cif, const std::string& label) {
+  if (cif == nullptr) return nullptr;
+  const auto found = std::ranges::find(cif->atoms, label, &CifAtom::label);
+  return found == cif->atoms.end() ? nullptr : &*found;
+}
+
+/// Moves a site onto a special position nearby, with a note; true when it was moved.
+bool snap(Site& site, const Place& place, Job& job) {
+  const SnappedPosition moved = snapped(job.group, site.position);
+  if (moved.moved)
+    job.notes.push_back({place, "site " + site.label + " was moved from (" +
+                                    to_string(site.position) + ") to the special position (" +
+                                    to_string(moved.position) + ")"});
+  site.position = moved.position;
+  return moved.moved;
+}
+
+void read_own_position(const Node& node, const CifAtom* atom, Site& site, Job& job) {
+  site.position = position_of(node, "position");
+  try {
+    if (!snap(site, node.place, job)) offer_fractions(node, site.label, job);
+    if (atom == nullptr) return;
+    const FractionVector there = snapped(job.group, atom->position).position;
+    if (spot_of(job.group, site.position) == spot_of(job.group, there)) return;
+  } catch (const Error& fault) {
+    throw fault.at(node.place);
+  }
+  throw Error(node.place, "the CIF has " + site.label + " at (" + to_string(atom->position) +
+                              "), which is not equivalent to (" + to_string(site.position) +
+                              "); leave the position out or take another label");
+}
+
+void read_cif_position(const CifAtom& atom, Site& site, Job& job) {
+  site.position = atom.position;
+  try {
+    snap(site, atom.place, job);
+  } catch (const Error& fault) {
+    throw fault.at(atom.place);
+  }
+}
+
+Site site_of(const Fields& fields, const CifStructure* cif, Job& job) {
   Site site;
   const Node& label = fields.require("label");
   site.label = text_of(label, "label");
@@ -92,20 +158,16 @@ Site site_of(const Fields& fields, Job& job) {
     throw Error(label.place, "label " + in_quotes(site.label) +
                                  " is not accepted; a label has 1 to 24 characters without blanks, "
                                  "commas and quotes");
-  const Node& position = fields.require("position");
-  site.position = position_of(position, "position");
-  try {
-    const SnappedPosition moved = snapped(job.group, site.position);
-    if (moved.moved)
-      job.notes.push_back(
-          {position.place, "site " + site.label + " was moved from (" + to_string(site.position) +
-                               ") to the special position (" + to_string(moved.position) + ")"});
-    else
-      offer_fractions(position, site.label, job);
-    site.position = moved.position;
-  } catch (const Error& fault) {
-    throw fault.at(position.place);
-  }
+  const CifAtom* atom = find_atom(cif, site.label);
+  if (const Node* position = fields.find("position"))
+    read_own_position(*position, atom, site, job);
+  else if (atom != nullptr)
+    read_cif_position(*atom, site, job);
+  else if (cif != nullptr)
+    throw Error(label.place, "the CIF has no atom " + in_quotes(site.label) +
+                                 "; accepted is one of its labels, or the key 'position'");
+  else
+    fields.require("position");
   return site;
 }
 
@@ -120,111 +182,105 @@ void require_unique_label(const Site& site, const Job& job) {
   for (const NuclearSite& other : job.other_sites) check(other.site);
 }
 
-MagneticSite magnetic_site_of(const Node& node, Job& job) {
+MagneticSite magnetic_site_of(const Node& node, const CifStructure* cif, Job& job) {
   constexpr std::array<std::string_view, 11> keys{"label",  "ion",       "position",     "b_iso",
                                                   "u_ij",   "occupancy", "moment_limit", "lande_g",
                                                   "spin_g", "c2",        "form_factor"};
   const Fields fields(node, "a magnetic site", keys);
   MagneticSite result;
-  result.site = site_of(fields, job);
+  result.site = site_of(fields, cif, job);
   require_unique_label(result.site, job);
+  const CifAtom* atom = find_atom(cif, result.site.label);
   result.ion = magnetic_ion_of(fields);
-  result.displacement = displacement_of(fields);
-  result.occupancy = occupancy_of(fields);
+  result.displacement = displacement_of(fields, atom);
+  result.occupancy = occupancy_of(fields, atom);
   if (const Node* limit = fields.find("moment_limit"))
     result.moment_limit =
         number_of(*limit, "moment_limit", {.above = 0, .at_most = 100, .unit = "µB"});
   return result;
 }
 
-NuclearSite nuclear_site_of(const Node& node, Job& job) {
+bool is_element_or_isotope(std::string_view text) {
+  const std::size_t digits = std::min(text.find_first_not_of("0123456789"), text.size());
+  return digits <= 3 && is_element(text.substr(digits));
+}
+
+NuclearSite nuclear_site_of(const Node& node, const CifStructure* cif, Job& job) {
   constexpr std::array<std::string_view, 6> keys{"label", "element", "position",
                                                  "b_iso", "u_ij",    "occupancy"};
   const Fields fields(node, "a site", keys);
   NuclearSite result;
-  result.site = site_of(fields, job);
+  result.site = site_of(fields, cif, job);
   require_unique_label(result.site, job);
+  const CifAtom* atom = find_atom(cif, result.site.label);
   const Node& element = fields.require("element");
   result.element = trimmed(text_of(element, "element"));
-  const std::size_t digits =
-      std::min(result.element.find_first_not_of("0123456789"), std::size_t{3});
-  if (!is_element(std::string_view(result.element).substr(std::min(digits, result.element.size()))))
+  if (!is_element_or_isotope(result.element))
     throw Error(element.place, "element " + in_quotes(result.element) +
                                    " is unknown; accepted is a symbol such as O, or an isotope "
                                    "such as 7Li, without charge");
-  result.displacement = displacement_of(fields);
-  result.occupancy = occupancy_of(fields);
+  result.displacement = displacement_of(fields, atom);
+  result.occupancy = occupancy_of(fields, atom);
   return result;
 }
 
-/// A site seen as an occupant of a spot.
-struct Occupant {
-  const Site* site;
-  double occupancy;
-  bool magnetic;
-  FractionVector spot;  ///< The smallest reduced position of the orbit: equal for equal spots.
-};
-
-FractionVector spot_of(const SpaceGroup& group, const FractionVector& position) {
-  FractionVector smallest = group.lattice_reduced(position);
-  for (const Operation& operation : group.operations())
-    smallest = std::min(smallest, group.lattice_reduced(operation.apply(position)));
-  return smallest;
-}
-
-/// Two elements may share a spot when their occupancies leave room for both.
-void require_room(const Occupant& a, const Occupant& b, double total) {
-  const std::string pair = "sites " + a.site->label + " and " + b.site->label;
-  if (a.magnetic && b.magnetic)
-    throw Error(b.site->place,
-                pair + " stand on the same spot; accepted is one magnetic site for a spot");
-  if (total > 1 + 1e-6)
-    throw Error(b.site->place, pair +
-                                   " stand on the same spot; accepted are sites apart, or "
-                                   "occupancies that sum to at most 1");
-}
-
-void require_distinct(const Job& job) {
-  std::vector<Occupant> occupants;
-  for (const MagneticSite& m : job.magnetic_sites)
-    occupants.push_back({&m.site, m.occupancy, true, spot_of(job.group, m.site.position)});
-  for (const NuclearSite& n : job.other_sites)
-    occupants.push_back({&n.site, n.occupancy, false, spot_of(job.group, n.site.position)});
-  std::vector<Site> apart;  // One site for each spot.
-  for (std::size_t i = 0; i < occupants.size(); ++i) {
-    const Occupant* first = nullptr;
-    double total = occupants[i].occupancy;
-    for (std::size_t j = 0; j < i; ++j) {
-      if (occupants[j].spot != occupants[i].spot) continue;
-      if (first == nullptr || occupants[j].magnetic) first = &occupants[j];
-      total += occupants[j].occupancy;
+/// The atoms of a CIF that the job does not name.
+void add_cif_sites(const CifStructure& cif, Job& job) {
+  std::vector<std::string> named;
+  for (const MagneticSite& site : job.magnetic_sites) named.push_back(site.site.label);
+  for (const NuclearSite& site : job.other_sites) named.push_back(site.site.label);
+  for (const CifAtom& atom : cif.atoms) {
+    if (std::ranges::find(named, atom.label) != named.end()) continue;
+    if (atom.occupancy == 0) {
+      job.notes.push_back({atom.place, "atom " + atom.label + " has occupancy 0 and is left out"});
+      continue;
     }
-    if (first == nullptr)
-      apart.push_back(*occupants[i].site);
-    else
-      require_room(*first, occupants[i], total);
+    NuclearSite site;
+    site.site.label = atom.label;
+    site.site.place = atom.place;
+    read_cif_position(atom, site.site, job);
+    require_unique_label(site.site, job);
+    site.element = atom.type_symbol.substr(0, atom.type_symbol.find_first_of("+-(0123456789", 1));
+    if (!is_element_or_isotope(site.element))
+      throw Error(atom.place, "the type " + in_quotes(atom.type_symbol) + " of " + atom.label +
+                                  " is no element; accepted is a symbol such as O or O2-");
+    site.displacement = displacement_of(atom);
+    site.occupancy = atom.occupancy;
+    job.other_sites.push_back(std::move(site));
   }
-  require_distinct_sites(job.group, job.cell, apart);
+}
+
+/// An ion whose element contradicts the CIF is a slip of the label.
+void require_same_element(const MagneticSite& site, const CifStructure& cif) {
+  const CifAtom* atom = find_atom(&cif, site.site.label);
+  if (atom == nullptr || atom->type_symbol.starts_with(site.ion.ion.element)) return;
+  throw Error(site.ion.place, "ion " + to_string(site.ion.ion) + ", but the CIF has " +
+                                  atom->type_symbol + " at " + atom->label +
+                                  "; accepted is an ion of the same element");
 }
 
 }  // namespace
 
-void read_sites(const Fields& root, Job& job) {
+void read_sites(const Fields& root, const CifStructure* cif, Job& job) {
   const Node* magnetic = root.find("magnetic_sites");
   const Node* others = root.find("other_sites");
-  if (magnetic == nullptr && others == nullptr) return;
+  if (magnetic == nullptr && others == nullptr && cif == nullptr) return;
   if (!job.cell_given)
     throw Error(root.key_place("crystal"), "crystal needs the key 'cell' when there are sites");
-  if (magnetic != nullptr)
-    for (const Node& node : list_of(*magnetic, "magnetic_sites"))
-      job.magnetic_sites.push_back(magnetic_site_of(node, job));
+  if (magnetic != nullptr) {
+    for (const Node& node : list_of(*magnetic, "magnetic_sites")) {
+      job.magnetic_sites.push_back(magnetic_site_of(node, cif, job));
+      if (cif != nullptr) require_same_element(job.magnetic_sites.back(), *cif);
+    }
+  }
   if (others != nullptr)
     for (const Node& node : list_of(*others, "other_sites"))
-      job.other_sites.push_back(nuclear_site_of(node, job));
+      job.other_sites.push_back(nuclear_site_of(node, cif, job));
+  if (cif != nullptr) add_cif_sites(*cif, job);
   try {
-    require_distinct(job);
+    require_distinct_spots(job);
   } catch (const Error& fault) {
-    throw fault.at((magnetic != nullptr ? magnetic : others)->place);
+    throw fault.at(root.place());
   }
 }
 
