@@ -71,7 +71,7 @@ TEST_F(JobCifTest, CrystalAndSitesComeFromTheCif) {
   EXPECT_EQ(to_string(job.other_sites[2].site.position), "99/100, 1/4, 7/100");
   ASSERT_EQ(job.notes.size(), 4U) << "the setting and how the CIF gives it come first";
   EXPECT_EQ(to_string(job.notes[2]).substr(folder_.string().size()),
-            "/parent.cif:19:1: site O1 was moved from (99/100, 6251/25000, 7/100) to the special "
+            "/parent.cif:20:1: site O1 was moved from (99/100, 6251/25000, 7/100) to the special "
             "position (99/100, 1/4, 7/100)");
   EXPECT_EQ(job.notes[3].text, "atom X1 has occupancy 0 and is left out");
 }
@@ -100,7 +100,7 @@ TEST_F(JobCifTest, ContradictionsAreErrors) {
             "job.yaml:3:51: error: the CIF has M1 at (0, 0, 1/2), which is not equivalent to (0, "
             "1/4, 0); leave the position out or take another label");
   EXPECT_EQ(fault("magnetic_sites: [{label: T1, ion: Mn3+, position: [1/2, 0, 0]}]\n"),
-            "parent.cif:16:1: error: sites T1 and M1 stand on the same spot; accepted are sites "
+            "parent.cif:17:1: error: sites T1 and M1 stand on the same spot; accepted are sites "
             "apart, or occupancies that sum to at most 1");
 }
 
