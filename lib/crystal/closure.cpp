@@ -27,6 +27,9 @@ void add_to_lattice(std::vector<FractionVector>& centrings, const FractionVector
   }
 }
 
+/// Rotations of a space group in reasonable axes stay far below; powers of others grow beyond.
+constexpr int largest_factor = 99;
+
 class Closure {
  public:
   explicit Closure(std::span<const Operation> generators) : generators_(generators) {}
@@ -35,8 +38,10 @@ class Closure {
     for (const Operation& generator : generators_) insert(generator);
     // A set of cosets that is closed under the generators from one side holds the whole group; the
     // translations met on the way generate its lattice (Schreier).
+    // NOLINTNEXTLINE(modernize-loop-convert): the list grows while it is walked.
     for (std::size_t i = 0; i < set_.representatives.size(); ++i)
       for (const Operation& generator : generators_) insert(set_.representatives[i] * generator);
+    // NOLINTNEXTLINE(modernize-loop-convert): the list grows while it is walked.
     for (std::size_t c = 0; c < set_.centrings.size(); ++c)
       for (const Operation& operation : set_.representatives)
         add_to_lattice(set_.centrings, times(operation.rotation, set_.centrings[c]));
@@ -46,6 +51,12 @@ class Closure {
 
  private:
   void insert(const Operation& operation) {
+    for (const IntVector& row : operation.rotation)
+      for (const int entry : row)
+        if (entry < -largest_factor || entry > largest_factor)
+          throw Error("operation " + to_string(operation) + " has factors beyond " +
+                      std::to_string(largest_factor) +
+                      "; the operations form no space group, or their axes are too skewed");
     const auto known =
         std::find_if(set_.representatives.begin(), set_.representatives.end(),
                      [&operation](const Operation& o) { return o.rotation == operation.rotation; });
@@ -68,6 +79,11 @@ class Closure {
 
 bool OperationSet::in_lattice(const FractionVector& v) const {
   return std::binary_search(centrings.begin(), centrings.end(), modulo_one(v));
+}
+
+bool OperationSet::has_rotation(const IntMatrix& R) const {
+  return std::any_of(representatives.begin(), representatives.end(),
+                     [&R](const Operation& o) { return o.rotation == R; });
 }
 
 bool OperationSet::contains(const Operation& operation) const {

@@ -14,6 +14,7 @@ struct OperationSet {
   std::vector<FractionVector> centrings;   ///< In [0, 1), sorted, 0 first.
 
   bool in_lattice(const FractionVector& v) const;
+  bool has_rotation(const IntMatrix& R) const;
   /// True when the operation, modulo the lattice, belongs to the set.
   bool contains(const Operation& operation) const;
 };

@@ -6,6 +6,7 @@
 
 #include "crystal/closure.hpp"
 #include "crystal/lattice.hpp"
+#include "crystal/origin.hpp"
 #include "crystal/space_group.hpp"
 #include "crystal/space_group_builder.hpp"
 #include "crystal/spglib.hpp"
@@ -59,19 +60,39 @@ std::pair<int, int> numbers_of_class(const OperationSet& set) {
   return {1, 1};
 }
 
-std::optional<int> coinciding_setting(const OperationSet& set) {
+/// The tabulated settings that have the set's rotations and as many translations, the standard
+/// setting of each number first.
+std::vector<int> settings_of_same_rotations(const OperationSet& set) {
   const auto [first, end] = numbers_of_class(set);
+  std::vector<int> hall_numbers;
+  for (int number = first; number < end; ++number)
+    hall_numbers.push_back(standard_hall_number(number));
   const auto hall_of = [](int number) {
     return first_hall_numbers()[static_cast<std::size_t>(number - 1)];
   };
+  for (int hall_number = hall_of(first); hall_number < hall_of(end); ++hall_number)
+    hall_numbers.push_back(hall_number);
   const std::size_t size = set.representatives.size() * set.centrings.size();
-  for (int hall_number = hall_of(first); hall_number < hall_of(end); ++hall_number) {
+  std::erase_if(hall_numbers, [&set, size](int hall_number) {
     const std::vector<Operation> operations = hall_operations(hall_number);
-    if (operations.size() == size &&
-        std::all_of(operations.begin(), operations.end(),
-                    [&set](const Operation& operation) { return set.contains(operation); }))
-      return hall_number;
-  }
+    return operations.size() != size ||
+           !std::all_of(operations.begin(), operations.end(), [&set](const Operation& operation) {
+             return set.has_rotation(operation.rotation);
+           });
+  });
+  return hall_numbers;
+}
+
+/// A tabulated setting of the same axes: of the same operations if possible, else about another
+/// origin.
+std::optional<TabulatedSetting> setting_of_same_axes(const OperationSet& set) {
+  const std::vector<int> hall_numbers = settings_of_same_rotations(set);
+  const FractionMatrix same = to_fractions(Operation{}.rotation);
+  for (const int hall_number : hall_numbers)
+    if (same_group(set, tabulated_set(hall_number))) return TabulatedSetting{hall_number, same, {}};
+  for (const int hall_number : hall_numbers)
+    if (const auto shift = shift_between(set, tabulated_set(hall_number)))
+      return TabulatedSetting{hall_number, same, *shift};
   return std::nullopt;
 }
 
@@ -90,48 +111,6 @@ FractionMatrix rounded_inverse(const std::array<std::array<double, 3>, 3>& T) {
           static_cast<std::int64_t>(std::llround((T[r][p] * T[s][q] - T[r][q] * T[s][p]) / det));
     }
   return result;
-}
-
-/// The exact shift near an approximate one that turns the set, already in tabulated axes but about
-/// another origin, into the tabulated group: (1 − R) shift = τ − t + lattice vector for all R.
-std::optional<FractionVector> exact_shift(const OperationSet& set, const OperationSet& tabulated,
-                                          const std::array<double, 3>& near) {
-  std::vector<FractionVector> rows;
-  std::vector<Fraction> right;
-  for (const Operation& operation : set.representatives) {
-    const auto target =
-        std::find_if(tabulated.representatives.begin(), tabulated.representatives.end(),
-                     [&operation](const Operation& o) { return o.rotation == operation.rotation; });
-    if (target == tabulated.representatives.end()) return std::nullopt;
-    const FractionVector difference = target->translation - operation.translation;
-    // The lattice vector is the one that makes both sides agree to rounding.
-    double smallest = 1;
-    FractionVector best{};
-    for (const FractionVector& centring : tabulated.centrings) {
-      const FractionVector value = difference + centring;
-      FractionVector side = value;
-      double residual = 0;
-      for (std::size_t i = 0; i < 3; ++i) {
-        double left = near[i];
-        for (std::size_t j = 0; j < 3; ++j) left -= operation.rotation[i][j] * near[j];
-        const double gap = left - value[i].to_double();
-        side[i] += Fraction(std::llround(gap));
-        residual = std::max(residual, std::abs(gap - std::round(gap)));
-      }
-      if (residual < smallest) {
-        smallest = residual;
-        best = side;
-      }
-    }
-    for (std::size_t i = 0; i < 3; ++i) {
-      FractionVector row{};
-      for (std::size_t j = 0; j < 3; ++j)
-        row[j] = Fraction((i == j ? 1 : 0) - operation.rotation[i][j]);
-      rows.push_back(row);
-      right.push_back(best[i]);
-    }
-  }
-  return solution(rows, right);
 }
 
 /// A decorated crystal whose symmetry is the set's: two general orbits on a generic metric.
@@ -160,9 +139,9 @@ std::optional<TabulatedSetting> found_by_search(const OperationSet& set, std::ui
   result.hall_number = hall_number;
   result.transformation = product(T, inverse(transpose(basis)));
   try {
-    const auto shift = exact_shift(transformed(primitive, T, {}), tabulated, found->origin_shift);
+    const auto shift = shift_between(transformed(primitive, T, {}), tabulated);
     if (!shift) return std::nullopt;
-    result.shift = modulo_one(*shift);
+    result.shift = *shift;
     if (!same_group(transformed(set, result.transformation, result.shift), tabulated))
       return std::nullopt;
   } catch (const std::logic_error&) {
@@ -172,8 +151,7 @@ std::optional<TabulatedSetting> found_by_search(const OperationSet& set, std::ui
 }
 
 std::optional<TabulatedSetting> identified(const OperationSet& set) {
-  if (const auto hall_number = coinciding_setting(set))
-    return TabulatedSetting{*hall_number, to_fractions(Operation{}.rotation), {}};
+  if (auto found = setting_of_same_axes(set)) return found;
   constexpr std::uint64_t attempts = 8;
   for (std::uint64_t seed = 1; seed <= attempts; ++seed)
     if (auto found = found_by_search(set, seed)) return found;

@@ -144,6 +144,9 @@ Error bad_part(std::string_view part, std::string_view why) {
                "; accepted are x,y+1/2,-z or x-y,x,z+0.25");
 }
 
+/// Keeps determinants within an int, however many terms a part has.
+constexpr Fraction largest_factor(99);
+
 /// One signed term such as "-x", "2y", "+1/2" of component i.
 void read_term(std::string_view part, std::string term, std::size_t i, Operation& operation) {
   const char last = static_cast<char>(std::tolower(static_cast<unsigned char>(term.back())));
@@ -165,9 +168,12 @@ void read_term(std::string_view part, std::string term, std::size_t i, Operation
   } catch (const Error&) {
     throw bad_part(part, "is no sum of x, y, z and a number");
   }
-  if (!factor.is_integer() || factor > Fraction(1000) || factor < Fraction(-1000))
+  if (!factor.is_integer() || factor > largest_factor || factor < -largest_factor)
     throw bad_part(part, "has a factor that is not a small integer");
-  operation.rotation[i][j] += static_cast<int>(factor.numerator());
+  int& entry = operation.rotation[i][j];
+  entry += static_cast<int>(factor.numerator());
+  if (Fraction(entry) > largest_factor || Fraction(entry) < -largest_factor)
+    throw bad_part(part, "has a factor that is not a small integer");
 }
 
 void read_part(std::string_view part, std::size_t i, Operation& operation) {

@@ -101,6 +101,7 @@ void SpaceGroupBuilder::fill_products(SpaceGroup& group) {
       images[a] = index_of(
           spinsieve::product(group.operations_[a].rotation, group.operations_[candidate].rotation));
     times_generator.push_back(std::move(images));
+    // NOLINTNEXTLINE(modernize-loop-convert): the list grows while it is walked.
     for (std::size_t i = 0; i < reached.size(); ++i)
       for (std::size_t g = 0; g < times_generator.size(); ++g) extend(reached[i], g);
   }

@@ -8,8 +8,9 @@
 
 #include <spglib.h>
 
-#include "crystal/space_group_builder.hpp"
 #include "exact/error.hpp"
+
+// NOLINTBEGIN(modernize-avoid-c-arrays): spglib's interface is C.
 
 namespace spinsieve {
 
@@ -148,7 +149,7 @@ void set_lattice(MadeUpCrystal& crystal, const IntMetric& G, double volume) {
   double L[3][3] = {};
   for (std::size_t i = 0; i < 3; ++i)
     for (std::size_t j = 0; j <= i; ++j) {
-      double sum = static_cast<double>(G[i][j]);
+      auto sum = static_cast<double>(G[i][j]);
       for (std::size_t k = 0; k < j; ++k) sum -= L[i][k] * L[j][k];
       L[i][j] = i == j ? std::sqrt(sum) : sum / L[j][j];
     }
@@ -177,18 +178,18 @@ void add_orbit(MadeUpCrystal& crystal, std::span<const Operation> operations, in
   }
 }
 
-/// The data set in the default setting of the type, or in that of a hall number; null on failure.
-std::unique_ptr<SpglibDataset, void (*)(SpglibDataset*)> dataset(MadeUpCrystal& crystal,
-                                                                 int hall_number) {
+/// The data set, in the axes of the first setting of its type, which are those of the standard
+/// setting; null on failure.
+std::unique_ptr<SpglibDataset, void (*)(SpglibDataset*)> dataset(MadeUpCrystal& crystal) {
   constexpr double tolerance = 1e-5;  // Å, with axes of some ten Å and exact input.
   std::vector<double> positions;
   for (const std::array<double, 3>& atom : crystal.atoms)
     positions.insert(positions.end(), atom.begin(), atom.end());
   const std::scoped_lock lock(door());
-  return {spg_get_dataset_with_hall_number(
+  return {spg_get_dataset(
               crystal.lattice,
               reinterpret_cast<double(*)[3]>(positions.data()),  // NOLINT: three numbers an atom.
-              crystal.types.data(), static_cast<int>(crystal.types.size()), hall_number, tolerance),
+              crystal.types.data(), static_cast<int>(crystal.types.size()), tolerance),
           spg_free_dataset};
 }
 
@@ -201,18 +202,13 @@ std::optional<FoundSymmetry> search_symmetry(std::span<const Operation> operatio
   add_orbit(crystal, operations, 1, state);
   add_orbit(crystal, operations, 2, state);
   set_lattice(crystal, G, 100.0 * static_cast<double>(crystal.atoms.size()));
-  const auto first = dataset(crystal, 0);
-  if (!first || first->n_operations != static_cast<int>(operations.size())) return std::nullopt;
-  const int number = first->spacegroup_number;
-  const auto found = dataset(crystal, standard_hall_number(number));
-  if (!found || found->spacegroup_number != number) return std::nullopt;
+  const auto found = dataset(crystal);
+  if (!found || found->n_operations != static_cast<int>(operations.size())) return std::nullopt;
   FoundSymmetry result;
-  result.number = number;
-  for (std::size_t i = 0; i < 3; ++i) {
+  result.number = found->spacegroup_number;
+  for (std::size_t i = 0; i < 3; ++i)
     for (std::size_t j = 0; j < 3; ++j)
       result.transformation[i][j] = found->transformation_matrix[i][j];
-    result.origin_shift[i] = found->origin_shift[i];
-  }
   return result;
 }
 
@@ -257,3 +253,5 @@ std::vector<PrimedOperation> magnetic_operations(int uni_number, int hall_number
 }
 
 }  // namespace spinsieve
+
+// NOLINTEND(modernize-avoid-c-arrays)

@@ -39,12 +39,11 @@ struct TabulatedSetting {
 /// The tabulated setting a closed list of operations belongs to, proved by exact transformation.
 std::optional<TabulatedSetting> identify_setting(std::span<const Operation> operations);
 
-/// What the symmetry search reports: x_tabulated = transformation · x + origin_shift, floating, for
-/// the standard setting of the number.
+/// What the symmetry search reports: the number and, floating, the axes of its standard setting:
+/// x_tabulated = transformation · x + some shift.
 struct FoundSymmetry {
   int number = 0;
   std::array<std::array<double, 3>, 3> transformation;
-  std::array<double, 3> origin_shift;
 };
 
 /// Searches the symmetry of a made-up crystal whose group is the given one: two general orbits,

@@ -264,7 +264,8 @@ std::vector<CifAtom> read_atoms(const CifBlock& block, std::vector<std::string>&
   for (std::size_t i = 0; i < labels->values.size(); ++i) {
     const CifValue& label = labels->values[i];
     const AtomRow row(block, labels->loop, i);
-    if (const CifValue* flag = row.find("_atom_site_calc_flag"); flag && flag->text == "dum") {
+    if (const CifValue* flag = row.find("_atom_site_calc_flag");
+        flag != nullptr && flag->text == "dum") {
       notes.push_back("the dummy site " + label.text + " is left out");
       continue;
     }
@@ -273,7 +274,7 @@ std::vector<CifAtom> read_atoms(const CifBlock& block, std::vector<std::string>&
     atom.place = label.place;
     atom.position = read_position(row, label);
     const CifValue* type = row.find("_atom_site_type_symbol");
-    atom.type_symbol = type ? type->text : type_of_label(label);
+    atom.type_symbol = type != nullptr ? type->text : type_of_label(label);
     if (const CifValue* value = row.find("_atom_site_occupancy")) {
       atom.occupancy = number(*value, "occupancy");
       if (atom.occupancy < 0 || atom.occupancy > 1)

@@ -120,6 +120,22 @@ TEST(IdentifyTest, TheTransformationLeadsToTheTabulatedSetting) {
   }
 }
 
+TEST(IdentifyTest, AnotherOriginKeepsTheAxes) {
+  for (int hall_number = 1; hall_number <= 530; ++hall_number) {
+    SCOPED_TRACE(hall_number);
+    const FractionVector shift{Fraction(1, 5), Fraction(2, 7), Fraction(5, 11)};
+    const OperationSet set = transformed(closure(hall_operations(hall_number)),
+                                         to_fractions(Operation{}.rotation), shift);
+    const auto found = identify_setting(listed(set));
+    ASSERT_TRUE(found);
+    EXPECT_EQ(found->transformation, to_fractions(Operation{}.rotation));
+    EXPECT_EQ(hall_setting(found->hall_number).number, hall_setting(hall_number).number);
+  }
+  // By hand: 2p ≡ -1/5 modulo 1, so p is 2/5 or 9/10.
+  const std::string setting = SpaceGroup::from_operations(parsed({"-x+1/5,-y,-z"})).setting();
+  EXPECT_TRUE(setting == "x+2/5,y,z" || setting == "x+9/10,y,z") << setting;
+}
+
 TEST(IdentifyTest, ACellMultipliedAlongItsAxesKeepsItsGroup) {
   // P n m a in a cell doubled along a: the half of it becomes a centring translation.
   const FractionMatrix T{{{Fraction(1, 2), 0, 0}, {0, 1, 0}, {0, 0, 1}}};
@@ -148,6 +164,9 @@ TEST(IdentifyTest, GeneratorsSuffice) {
 TEST(IdentifyTest, ListsThatFormNoGroupAreRefused) {
   EXPECT_EQ(refusal({"x+y,y,z"}).substr(0, 62),
             "operation x+48y,y,z brings more than 48 rotations; the operati");
+  EXPECT_EQ(refusal({"2x+y,x+y,z"}),  // Powers hold Fibonacci numbers: 89 + 55 = 144.
+            "operation 233x+144y,144x+89y,z has factors beyond 99; the operations form no space "
+            "group, or their axes are too skewed");
   EXPECT_EQ(refusal({"x+0.3333,y,z"}),
             "the operations make the translation 3333/10000, 0, 0 a lattice vector, which divides "
             "the cell more than 96-fold; are translations exact, such as 1/3 instead of 0.3333?");

@@ -49,6 +49,8 @@ TEST(OperationTest, FaultsAreQuoted) {
   EXPECT_EQ(refusal("x,y,z+"), "'z+' in an operation is no sum of x, y, z and a number" + accepted);
   EXPECT_EQ(refusal("1/2x,y,z"),
             "'1/2x' in an operation has a factor that is not a small integer" + accepted);
+  EXPECT_EQ(refusal("60x+60x,y,z"),
+            "'60x+60x' in an operation has a factor that is not a small integer" + accepted);
   EXPECT_EQ(refusal("x,x,z"),
             "operation 'x,x,z' has the determinant 0; a symmetry operation has 1 or -1");
   EXPECT_EQ(refusal("2x,y,z"),
