@@ -3,13 +3,12 @@
 #include <algorithm>
 #include <charconv>
 #include <cmath>
-#include <fstream>
-#include <iterator>
 #include <numbers>
 #include <span>
 
 #include "crystal/ion.hpp"
 #include "input/cif_syntax.hpp"
+#include "input/text.hpp"
 
 namespace spinsieve {
 
@@ -321,11 +320,10 @@ CifStructure parse_cif(const std::shared_ptr<const std::string>& file, const std
 }
 
 CifStructure read_cif(const std::string& path) {
-  const auto name = std::make_shared<const std::string>(path);
-  std::ifstream stream(path, std::ios::binary);
-  const std::string text{std::istreambuf_iterator<char>(stream), std::istreambuf_iterator<char>()};
-  if (!stream.is_open() || stream.bad()) throw Error(Place(name, 0, 0), "the file cannot be read");
-  return parse_cif(name, text);
+  const TextFile file = read_text_file(path);
+  constexpr std::string_view byte_order_mark = "\xEF\xBB\xBF";
+  const bool marked = file.content.starts_with(byte_order_mark);
+  return parse_cif(file.name, marked ? file.content.substr(byte_order_mark.size()) : file.content);
 }
 
 }  // namespace spinsieve
