@@ -1,1 +1,0 @@
-// Keeps the target valid until the stage has its first source.
