@@ -40,7 +40,7 @@ std::optional<double> two_theta_degrees(const Geometry& geometry, double q) {
 
 double relative_width(const Measurement& measurement, double q) {
   if (const double* width = std::get_if<double>(&measurement.resolution)) return *width;
-  const Caglioti& c = std::get<Caglioti>(measurement.resolution);
+  const auto& c = std::get<Caglioti>(measurement.resolution);
   const auto* constant = std::get_if<ConstantWavelength>(&measurement.geometry);
   if (constant == nullptr)
     throw Error(measurement.place,

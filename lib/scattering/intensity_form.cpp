@@ -43,7 +43,7 @@ Eigen::MatrixXd IntensityForm::barn() const { return barn_per_mu_b2 * mu_b2_; }
 std::vector<IntensityForm> line_forms(const MagneticScatterers& scatterers,
                                       const MomentField& field, const ReflectionTable& table,
                                       std::span<const std::size_t> lines) {
-  const Eigen::Index n = static_cast<Eigen::Index>(field.parameters);
+  const auto n = static_cast<Eigen::Index>(field.parameters);
   std::vector<Eigen::MatrixXd> sums(lines.size(), Eigen::MatrixXd::Zero(n, n));
   for (const FourierField& arm_field : field.arms) {
     const auto arm = std::ranges::find(table.arms(), arm_field.k, &Arm::k);

@@ -315,7 +315,7 @@ void ObservationPlan::plan_crystal(const Cell& cell, const SpaceGroup& group,
 
 std::vector<DataPoint> data_points(const ObservationPlan& plan,
                                    const MagneticScatterers& scatterers, const MomentField& field) {
-  const Eigen::Index n = static_cast<Eigen::Index>(field.parameters);
+  const auto n = static_cast<Eigen::Index>(field.parameters);
   std::vector<DataPoint> points;
   std::vector<std::size_t> lines;
   std::vector<std::size_t> line_point;

@@ -6,25 +6,18 @@
 #include "scattering/geometry.hpp"
 
 namespace spinsieve {
-namespace {
 
-struct Placed {
-  double centre;
-  double fwhm;
-};
-
-/// Centre and full width on the abscissa of a line at q of relative width ΔQ/Q.
-Placed placed(Abscissa axis, const Geometry& geometry, double q, double relative) {
+PlacedLine placed_line(const Measurement& measurement, double q) {
   const double pi = std::numbers::pi;
+  const double relative = relative_width(measurement, q);
+  const Abscissa axis = abscissa(measurement.geometry);
   if (axis == Abscissa::q) return {q, q * relative};
   const double d = 2 * pi / q;
   if (axis == Abscissa::d) return {d, d * relative};
-  const double two_theta = two_theta_degrees(geometry, q).value();
+  const double two_theta = two_theta_degrees(measurement.geometry, q).value();
   // Δ2θ = 2 tanθ ΔQ/Q, in degrees.
   return {two_theta, 2 * std::tan(two_theta / 2 * pi / 180) * relative * 180 / pi};
 }
-
-}  // namespace
 
 double pseudo_voigt(double x, double centre, double fwhm, double eta) {
   const double pi = std::numbers::pi;
@@ -47,10 +40,9 @@ std::vector<double> profile(const Measurement& measurement, std::span<const Prof
   std::vector<double> y(x.size());
   for (const ProfileLine& line : lines) {
     if (axis == Abscissa::two_theta && line.q >= largest_q(measurement.geometry).value()) continue;
-    const auto [centre, fwhm] =
-        placed(axis, measurement.geometry, line.q, relative_width(measurement, line.q));
+    const PlacedLine placed = placed_line(measurement, line.q);
     for (std::size_t i = 0; i < x.size(); ++i)
-      y[i] += line.intensity * pseudo_voigt(x[i], centre, fwhm, eta);
+      y[i] += line.intensity * pseudo_voigt(x[i], placed.centre, placed.fwhm, eta);
   }
   return y;
 }

@@ -23,6 +23,15 @@ struct ProfileLine {
 enum class Abscissa { two_theta, d, q };
 Abscissa abscissa(const Geometry& geometry);
 
+/// Where a line at q falls on the abscissa, and its full width there.
+struct PlacedLine {
+  double centre = 0;
+  double fwhm = 0;
+};
+
+/// Throws Error as relative_width. REQUIRES: q within reach of the wavelength.
+PlacedLine placed_line(const Measurement& measurement, double q);
+
 /// Sum of pseudo-Voigt lines at the points x, widths from the measurement's resolution; lines out
 /// of reach of the wavelength are left out. Throws Error as relative_width.
 /// eta: 0 for the Gaussian lines of most constant-wavelength instruments.

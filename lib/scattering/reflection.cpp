@@ -106,7 +106,8 @@ void collect(const Cell& cell, const ReciprocalLattice& lattice, const Matrix3& 
         if (squared > high || squared < low) continue;
         if (kind != ArmKind::pair) {
           // Exact also in floating point: a component that is 0 has an integer offset.
-          const auto leading = std::ranges::find_if(position, [](double x) { return x != 0; });
+          const auto* const leading =
+              std::ranges::find_if(position, [](double x) { return x != 0; });
           if (leading == position.end() || *leading < 0)
             continue;  // The mate at −Q is kept, and Q = 0 is none.
         }
