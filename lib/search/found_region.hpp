@@ -15,6 +15,7 @@ namespace spinsieve {
 struct FoundRegion {
   std::size_t dimension = 0;
   std::size_t family = 0;  ///< Index among the fixed subspaces.
+  std::vector<int> harmonics = {1};
   std::vector<Box> boxes;
   LineFit fit;
   Vector3 k{};       ///< Components of the best point on a*, b*, c*.

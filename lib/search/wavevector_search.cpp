@@ -5,6 +5,7 @@
 #include <cstdio>
 #include <numbers>
 #include <tuple>
+#include <utility>
 
 #include "search/family_search.hpp"
 #include "search/presentation.hpp"
@@ -21,6 +22,7 @@ constexpr double hopeless = 0.2;
 constexpr double most_leaves = 4e6;
 // Density of predicted lines is counted up to this multiple of a line's |Q|.
 constexpr double density_reach = 4.0 / 3.0;
+constexpr double largest_harmonic = 3;
 
 std::string number_text(double value) {
   std::array<char, 32> text{};
@@ -88,7 +90,7 @@ class Search {
           std::max(farthest, norm(zone.from_frame(zone.bounds.centre)) + norm(zone.bounds.half));
     }
     try {
-      points_ = space_.points(largest_q_ * density_reach + farthest);
+      points_ = space_.points(largest_q_ * density_reach + largest_harmonic * farthest);
     } catch (const Error& error) {
       const auto last = std::ranges::max_element(problem.lines, {}, &SearchLine::q);
       throw Error(last->place,
@@ -97,12 +99,28 @@ class Search {
   }
 
   SearchResult run() {
-    std::vector<FoundRegion> regions;
-    for (std::size_t dimension = 0; dimension <= static_cast<std::size_t>(problem_.deepest);
-         ++dimension)
-      search_kind(dimension, regions);
-    regions = without_repetitions(std::move(regions), zones_, space_, 0.1 * narrowest_);
-    for (FoundRegion& region : regions) judge(region);
+    std::vector<FoundRegion> regions = search_harmonics({1});
+    if (regions.empty()) {
+      for (const KindCoverage& kind : std::exchange(kinds_, {}))
+        result_.coverage.kinds.push_back(kind);
+      // The lattice itself coexisting with k, the third harmonic, and both.
+      const std::vector<std::vector<int>> further = {{0, 1}, {1, 3}, {0, 1, 3}};
+      for (const std::vector<int>& harmonics : further) {
+        std::vector<FoundRegion> more = search_harmonics(harmonics);
+        for (FoundRegion& region : more) {
+          region.evidence.expected *= static_cast<double>(further.size());
+          region.evidence.chance = -std::expm1(-region.evidence.expected);
+          regions.push_back(std::move(region));
+        }
+        kinds_.clear();
+      }
+      if (!regions.empty())
+        result_.notes.emplace_back(
+            "no single k explains the lines; the solutions listed take k together with the "
+            "lattice itself (harmonic 0) or its third harmonic");
+    } else {
+      result_.coverage.kinds = kinds_;
+    }
     std::ranges::stable_sort(regions, [](const FoundRegion& a, const FoundRegion& b) {
       return std::tie(a.evidence.expected, a.dimension, a.fit.rms_q) <
              std::tie(b.evidence.expected, b.dimension, b.fit.rms_q);
@@ -117,6 +135,21 @@ class Search {
   }
 
  private:
+  // All distinct regions for one set of harmonics, with their evidence.
+  std::vector<FoundRegion> search_harmonics(const std::vector<int>& harmonics) {
+    question_.harmonics = harmonics;
+    std::vector<FoundRegion> regions;
+    for (std::size_t dimension = 0; dimension <= static_cast<std::size_t>(problem_.deepest);
+         ++dimension)
+      search_kind(dimension, regions);
+    regions = without_repetitions(std::move(regions), zones_, space_, 0.1 * narrowest_);
+    executor_.for_each(regions.size(), [&](std::size_t i) {
+      regions[i].harmonics = harmonics;
+      judge(regions[i]);
+    });
+    return regions;
+  }
+
   void search_kind(std::size_t dimension, std::vector<FoundRegion>& regions) {
     KindCoverage kind;
     kind.kind = static_cast<StratumKind>(dimension);
@@ -133,10 +166,12 @@ class Search {
     if (!kind.note.empty()) {
       kind.searched = false;
       kind.complete = false;
+      kinds_.push_back(kind);
+      // Wider questions meet the same obstacle; it is said once.
+      if (question_.harmonics.size() > 1) return;
       for (const FixedSubspace& family : families_)
         if (family.dimension() == dimension) result_.undetermined.push_back(family.k);
       result_.notes.push_back(kind.note);
-      result_.coverage.kinds.push_back(kind);
       return;
     }
     for (std::size_t f = 0; f < families_.size(); ++f) {
@@ -159,7 +194,7 @@ class Search {
                   " boxes was reached for wavevectors of kind " + to_string(kind.kind);
       result_.notes.push_back(kind.note);
     }
-    result_.coverage.kinds.push_back(kind);
+    kinds_.push_back(kind);
   }
 
   // Why the lines cannot fix a kind; empty when they can.
@@ -176,11 +211,12 @@ class Search {
     for (const FixedSubspace& family : families_)
       if (family.dimension() == dimension)
         cogroup = std::max(cogroup, static_cast<double>(family.cogroup.size()));
+    const auto harmonics = static_cast<double>(question_.harmonics.size());
     std::vector<double> matches;
     for (const LineWindow& window : line_windows(question_, space_)) {
       const double middle = (window.low + window.high) / 2;
       const double density =
-          4 * std::numbers::pi * middle * middle / space_.cell_volume() / cogroup;
+          harmonics * 4 * std::numbers::pi * middle * middle / space_.cell_volume() / cogroup;
       matches.push_back(-std::expm1(-density * (window.high - window.low)));
     }
     const double coincidence = at_least(effective, matches);
@@ -197,15 +233,14 @@ class Search {
     const SearchZone& zone = zones_[region.family];
     std::vector<double> lengths;
     for (const Satellite& satellite :
-         satellites_of(zone, points_, question_.harmonics, largest_q_ * density_reach))
+         satellites_of(zone, points_, region.harmonics, largest_q_ * density_reach))
       lengths.push_back(norm(satellite.start + satellite.factor * region.fit.x));
     region.predicted =
         distinct_lines(std::move(lengths), largest_q_ * density_reach, narrowest_ / 2);
-    const LineFitter fitter(zone, space_, {}, question_.lines, 0);
     double trials = trials_[region.dimension];
     if (region.dimension > 0) {
       const std::vector<Satellite> satellites =
-          satellites_of(zone, points_, question_.harmonics, largest_q_);
+          satellites_of(zone, points_, region.harmonics, largest_q_);
       const LineFitter full(zone, space_, satellites, question_.lines, question_.cell_tolerance);
       trials = std::max(1.0, trials / full.resolution_volume(region.fit));
     }
@@ -218,7 +253,7 @@ class Search {
     Solution result;
     result.kind = static_cast<StratumKind>(region.dimension);
     result.vector = presented(region.k, family, space_);
-    result.harmonics = question_.harmonics;
+    result.harmonics = region.harmonics;
     result.reach = region.reach;
     result.matched = region.fit.matched;
     result.of = question_.lines.size();
@@ -241,7 +276,7 @@ class Search {
     constexpr int largest_denominator = 12;
     const SearchZone& zone = zones_[region.family];
     const std::vector<Satellite> satellites =
-        satellites_of(zone, points_, question_.harmonics, largest_q_);
+        satellites_of(zone, points_, region.harmonics, largest_q_);
     const LineFitter fitter(zone, space_, satellites, question_.lines, question_.cell_tolerance);
     for (int denominator = 1; denominator <= largest_denominator; ++denominator) {
       const FractionVector member = nearest_member(vector.family, vector.k, denominator);
@@ -278,6 +313,7 @@ class Search {
   std::vector<FixedSubspace> families_;
   std::vector<SearchZone> zones_;
   std::vector<LatticePoint> points_;
+  std::vector<KindCoverage> kinds_;  // of the harmonics in question
   std::array<double, 4> trials_{};
   SearchResult result_;
 };

@@ -55,7 +55,6 @@ struct Solution {
   /// The simplest k with denominators up to 12 that explains as many lines, where k is not a point.
   std::optional<FractionVector> commensurate;
   std::vector<int> harmonics = {1};  ///< Multiples of k that carry lines; 0 is the lattice itself.
-  std::vector<LocatedVector> together;  ///< Further independent wavevectors that share the lines.
   double reach = 0;  ///< Å⁻¹: the k of this solution that the tolerances allow are within it.
   std::size_t matched = 0;
   std::size_t of = 0;
@@ -103,10 +102,12 @@ struct SearchResult {
 /// A required line (not foreign) is explained when some |τ ± k| lies within its tolerance, widened
 /// by the zero shift and the cell tolerance; up to options.foreign required lines may stay
 /// unexplained. Positions depend on the lattice alone: classes are those of its holohedry, and
-/// further stars of the group appear under tied_with. Symmetry points, lines, planes and the whole
-/// zone are searched by interval branch and bound, so no class outside the list explains the lines
-/// when the coverage is complete and found ≤ options.count.
-/// Throws Error on no lines, a position or tolerance out of range, or lines beyond the range.
+/// further stars of the group appear under tied_with. When no single k explains the lines, k with
+/// the lattice itself (k = 0 coexisting) and k with its third harmonic are tried, equally complete.
+/// Symmetry points, lines, planes and the whole zone are searched by interval branch and bound, so
+/// no class outside the list explains the lines when the coverage is complete and found ≤
+/// options.count. Throws Error on no lines, a position or tolerance out of range, or lines beyond
+/// the range.
 SearchResult locate(const SearchProblem& problem, Executor& executor);
 
 }  // namespace spinsieve

@@ -300,6 +300,31 @@ TEST(WavevectorSearchTest, SharedErrorsWithinTheirBoundsLoseNothing) {
   }
 }
 
+TEST(WavevectorSearchTest, HarmonicsAndTheLatticeJoinWhenOneVectorIsNotEnough) {
+  Executor executor;
+  const SpaceGroup group = parse_space_group("P n m a");
+  const Cell cell(5.74, 7.69, 5.53, 90, 90, 90);
+  const struct {
+    std::vector<int> harmonics;
+    Vector3 other;
+  } cases[] = {{{0, 1}, {0, 0, 0}}, {{1, 3}, {0, 0.63, 0}}};
+  for (const auto& [harmonics, other] : cases) {
+    SearchProblem problem{cell, group, {}, {}, {}};
+    std::vector<double> lines = satellite_lines(cell, group, {0, 0.21, 0}, 1.7, 1e-3);
+    const std::vector<double> more = satellite_lines(cell, group, other, 1.7, 1e-3);
+    ASSERT_GT(more.size(), 1U);
+    lines.insert(lines.end(), more.begin(), more.end());
+    for (const double q : lines) problem.lines.push_back({q, 0.0006 * q, 0, false, "", {}});
+    const SearchResult found = locate(problem, executor);
+    ASSERT_FALSE(found.solutions.empty());
+    const Solution& best = found.solutions.front();
+    EXPECT_EQ(best.harmonics, harmonics);
+    EXPECT_EQ(to_string(best.vector.family), "0, u, 0");
+    EXPECT_NEAR(best.vector.k[1], 0.21, 1e-3);
+    EXPECT_EQ(best.matched, best.of);
+  }
+}
+
 TEST(WavevectorSearchTest, TooFewLinesLeaveFamiliesUndetermined) {
   const SpaceGroup group = parse_space_group("P m m m");
   const Cell cell(4.1, 5.2, 6.3, 90, 90, 90);
