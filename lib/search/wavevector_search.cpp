@@ -55,9 +55,9 @@ void check(const SearchProblem& problem) {
     throw Error("foreign: " + std::to_string(options.foreign) + "; it must be 0 or more");
   if (options.count < 1)
     throw Error("count: " + std::to_string(options.count) + "; it must be 1 or more");
-  if (!(options.cell_tolerance >= 0 && options.cell_tolerance <= 0.05))
+  if (!(options.cell_tolerance >= 0 && options.cell_tolerance <= 0.1))
     throw Error("cell_tolerance: " + number_text(options.cell_tolerance) +
-                "; it must lie between 0 and 0.05");
+                "; it must lie between 0 and 0.1");
   const auto required = static_cast<std::size_t>(
       std::ranges::count_if(problem.lines, [](const SearchLine& l) { return !l.foreign; }));
   if (required <= static_cast<std::size_t>(options.foreign))
