@@ -252,24 +252,44 @@ TEST(WavevectorSearchTest, StarsThatShareTheirPositionsAreTied) {
   const Cell cell(6.4, 6.4, 6.4, 90, 90, 90);
   const struct {
     const char* group;
+    Vector3 k;
+    StratumKind kind;
     std::size_t ties;
     const char* source;
   } cases[] = {
-      // m-3m carries (u,v,0) to 24 arms; m-3, which is 23 with k and -k together, to 12.
-      {"P 2_1 3", 1, "by hand: (u,v,0) and (v,u,0)"},
-      {"P m -3 m", 0, "by hand: one star"},
+      {"P 2_1 3", {0.13, 0.31, 0}, StratumKind::plane, 1, "by hand: 24 arms of m-3m, 12 of 23"},
+      // 48 arms of m-3m; 23 carries k to 12, and -k to 12 more that count as the same star.
+      {"P 2_1 3", {0.13, 0.31, 0.22}, StratumKind::general, 1, "by hand: 48 arms, 2 times 12"},
+      {"P m -3 m", {0.13, 0.31, 0}, StratumKind::plane, 0, "by hand: one star"},
   };
-  for (const auto& [symbol, ties, source] : cases) {
+  for (const auto& [symbol, k, kind, ties, source] : cases) {
     SCOPED_TRACE(source);
     const SpaceGroup group = parse_space_group(symbol);
     SearchProblem problem{cell, group, {}, {}, {}};
-    for (const double q : satellite_lines(cell, group, {0.13, 0.31, 0}, 1.9, 1e-3))
+    for (const double q : satellite_lines(cell, group, k, 1.7, 1e-3))
       problem.lines.push_back({q, 0.0005 * q, 0, false, "", {}});
     const SearchResult found = locate(problem, executor);
     ASSERT_FALSE(found.solutions.empty());
-    EXPECT_EQ(found.solutions.front().kind, StratumKind::plane);
+    EXPECT_EQ(found.solutions.front().kind, kind);
     EXPECT_EQ(found.solutions.front().tied_with.size(), ties);
   }
+}
+
+TEST(WavevectorSearchTest, CellToleranceWidensTheSearch) {
+  Executor executor;
+  const SpaceGroup group = parse_space_group("P n m a");
+  const Cell real(5.74 * 1.003, 7.69 * 0.997, 5.53 * 1.003, 90, 90, 90);
+  const Vector3 k = {0, 0.3, 0};
+  SearchProblem problem{Cell(5.74, 7.69, 5.53, 90, 90, 90), group, {}, {}, {}};
+  for (const double q : satellite_lines(real, group, k, 1.9, 1e-3))
+    problem.lines.push_back({q, 0.0003 * q, 0, false, "", {}});
+  problem.deepest = StratumKind::line;
+  EXPECT_EQ(locate(problem, executor).found, 0U) << "the stated cell does not fit these lines";
+  problem.options.cell_tolerance = 0.004;
+  const SearchResult found = locate(problem, executor);
+  ASSERT_FALSE(found.solutions.empty());
+  EXPECT_EQ(to_string(found.solutions.front().vector.family), "0, u, 0");
+  EXPECT_NEAR(found.solutions.front().strain[1], -0.003, 5e-4);
 }
 
 TEST(WavevectorSearchTest, SharedErrorsWithinTheirBoundsLoseNothing) {
