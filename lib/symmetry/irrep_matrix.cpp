@@ -1,5 +1,6 @@
 #include "symmetry/irrep_matrix.hpp"
 
+#include <algorithm>
 #include <cmath>
 #include <optional>
 #include <stdexcept>
@@ -60,19 +61,41 @@ IrrepMatrix::IrrepMatrix(const ExactMatrix& matrix)
   if (monomial) return;
   column_ = {};
   exponent_ = {};
-  dense_ = matrix;
+  dense_ = std::make_shared<const ExactMatrix>(matrix);
 }
 
 ExactMatrix IrrepMatrix::to_exact() const {
-  if (!is_monomial()) return dense_;
+  if (!is_monomial()) return *dense_;
   ExactMatrix result(dimension_, dimension_);
   for (std::size_t i = 0; i < dimension_; ++i)
     result(i, column_[i]) = Cyclotomic::root(exponent_[i]);
   return result;
 }
 
+bool operator==(const IrrepMatrix& a, const IrrepMatrix& b) {
+  if (a.dimension_ != b.dimension_ || a.is_monomial() != b.is_monomial()) return false;
+  if (!a.is_monomial()) return *a.dense_ == *b.dense_;
+  return a.column_ == b.column_ && a.exponent_ == b.exponent_;
+}
+
+std::optional<int> IrrepMatrix::ratio(const IrrepMatrix& other) const {
+  if (is_monomial() != other.is_monomial()) return std::nullopt;
+  int m = 0;
+  if (is_monomial()) {
+    m = root_exponent(exponent_[0] - other.exponent_[0]);
+  } else {
+    std::size_t column = 0;
+    while ((*other.dense_)(0, column).is_zero()) ++column;
+    const std::optional<Phase> phase = ((*dense_)(0, column) / (*other.dense_)(0, column)).phase();
+    if (!phase) return std::nullopt;
+    m = static_cast<int>(phase->numerator() * (Cyclotomic::order / phase->denominator()));
+  }
+  if (*this != other.times_root(m)) return std::nullopt;
+  return m;
+}
+
 IrrepMatrix IrrepMatrix::times_root(int exponent) const {
-  if (!is_monomial()) return IrrepMatrix(Cyclotomic::root(exponent) * dense_);
+  if (!is_monomial()) return IrrepMatrix(Cyclotomic::root(exponent) * *dense_);
   IrrepMatrix result = *this;
   for (std::size_t i = 0; i < dimension_; ++i)
     result.exponent_[i] = static_cast<std::uint8_t>(root_exponent(exponent_[i] + exponent));
@@ -80,7 +103,7 @@ IrrepMatrix IrrepMatrix::times_root(int exponent) const {
 }
 
 IrrepMatrix IrrepMatrix::adjoint() const {
-  if (!is_monomial()) return IrrepMatrix(dense_.adjoint());
+  if (!is_monomial()) return IrrepMatrix(dense_->adjoint());
   IrrepMatrix result = *this;
   for (std::size_t i = 0; i < dimension_; ++i) {
     result.column_[column_[i]] = static_cast<std::uint8_t>(i);
@@ -90,7 +113,7 @@ IrrepMatrix IrrepMatrix::adjoint() const {
 }
 
 IrrepMatrix IrrepMatrix::conjugate() const {
-  if (!is_monomial()) return IrrepMatrix(dense_.conjugate());
+  if (!is_monomial()) return IrrepMatrix(dense_->conjugate());
   IrrepMatrix result = *this;
   for (std::size_t i = 0; i < dimension_; ++i)
     result.exponent_[i] = static_cast<std::uint8_t>(root_exponent(-exponent_[i]));
@@ -116,7 +139,7 @@ IrrepMatrix::Trace IrrepMatrix::trace() const {
       if (column_[i] == i) add_root(sum, exponent_[i], 1);
     return sum;
   }
-  const Cyclotomic exact = dense_.trace();
+  const Cyclotomic exact = dense_->trace();
   if (exact.denominator() != 1) throw std::logic_error("a trace that is no algebraic integer");
   for (std::size_t i = 0; i < 8; ++i) sum[i] = static_cast<std::int16_t>(exact.coefficients()[i]);
   return sum;
@@ -174,21 +197,104 @@ ExactMatrix normalized_unitary(ExactMatrix matrix) {
   throw std::logic_error("an intertwiner that cannot be made unitary inside Q(e(1/24))");
 }
 
+namespace {
+
+/// ζ^e with n ζ^e = value for a positive integer n.
+struct ScaledRoot {
+  int scale = 0;  ///< 0: the value has no such form.
+  int exponent = 0;
+};
+
+ScaledRoot scaled_root(const IrrepMatrix::Trace& value) {
+  for (int e = 0; e < Cyclotomic::order; ++e) {
+    const IrrepMatrix::Trace& root = roots[index(e)];
+    std::size_t first = 0;
+    while (root[first] == 0) ++first;
+    const int scale = value[first] / root[first];
+    if (scale <= 0) continue;
+    bool equal = true;
+    for (std::size_t i = 0; i < 8 && equal; ++i) equal = value[i] == scale * root[i];
+    if (equal) return {scale, e};
+  }
+  return {};
+}
+
+/// Σ left[n] E right[n]⁺ with the one entry of E in row 0 and a column, for monomial matrices.
+using TraceMatrix =
+    std::array<std::array<IrrepMatrix::Trace, IrrepMatrix::largest>, IrrepMatrix::largest>;
+
+TraceMatrix monomial_sum(std::span<const IrrepMatrix> left, std::span<const IrrepMatrix> right,
+                         int column) {
+  const int dimension = left[0].dimension();
+  TraceMatrix sum{};
+  for (std::size_t n = 0; n < left.size(); ++n) {
+    int i = 0;
+    while (left[n].column(i) != 0) ++i;
+    int j = 0;
+    while (right[n].column(j) != column) ++j;
+    if (i >= dimension || j >= dimension) throw std::logic_error("a monomial matrix without entry");
+    add_root(sum[index(i)][index(j)], root_exponent(left[n].exponent(i) - right[n].exponent(j)), 1);
+  }
+  return sum;
+}
+
+/// The unitary multiple of the sum, when that is monomial.
+std::optional<IrrepMatrix> monomial_multiple(const TraceMatrix& sum, int dimension) {
+  std::array<std::uint8_t, IrrepMatrix::largest> columns{};
+  std::array<std::uint8_t, IrrepMatrix::largest> exponents{};
+  int scale = 0;
+  for (int i = 0; i < dimension; ++i) {
+    int entries = 0;
+    for (int j = 0; j < dimension; ++j) {
+      const IrrepMatrix::Trace& entry = sum[index(i)][index(j)];
+      if (entry == IrrepMatrix::Trace{}) continue;
+      const ScaledRoot root = scaled_root(entry);
+      if (root.scale == 0 || ++entries > 1 || (scale != 0 && root.scale != scale))
+        return std::nullopt;
+      scale = root.scale;
+      columns[index(i)] = static_cast<std::uint8_t>(j);
+      exponents[index(i)] = static_cast<std::uint8_t>(root.exponent);
+    }
+    if (entries == 0) return std::nullopt;
+  }
+  return IrrepMatrix(dimension, columns, exponents);
+}
+
+ExactMatrix dense_sum(std::span<const IrrepMatrix> left, std::span<const IrrepMatrix> right,
+                      std::size_t column) {
+  const auto dimension = static_cast<std::size_t>(left[0].dimension());
+  ExactMatrix sum(dimension, dimension);
+  for (std::size_t n = 0; n < left.size(); ++n) {
+    const ExactMatrix of_left = left[n].to_exact();
+    const ExactMatrix of_right = right[n].to_exact();
+    for (std::size_t i = 0; i < dimension; ++i) {
+      if (of_left(i, 0).is_zero()) continue;
+      for (std::size_t j = 0; j < dimension; ++j)
+        if (!of_right(j, column).is_zero())
+          sum(i, j) += of_left(i, 0) * of_right(j, column).conjugate();
+    }
+  }
+  return sum;
+}
+
+}  // namespace
+
 IrrepMatrix unitary_intertwiner(std::span<const IrrepMatrix> left,
                                 std::span<const IrrepMatrix> right) {
-  const auto dimension = static_cast<std::size_t>(left[0].dimension());
-  for (std::size_t column = 0; column < dimension; ++column) {
-    // E has its one entry in row 0 and this column.
-    ExactMatrix sum(dimension, dimension);
-    for (std::size_t n = 0; n < left.size(); ++n) {
-      const ExactMatrix of_left = left[n].to_exact();
-      const ExactMatrix of_right = right[n].to_exact();
-      for (std::size_t i = 0; i < dimension; ++i) {
-        if (of_left(i, 0).is_zero()) continue;
-        for (std::size_t j = 0; j < dimension; ++j)
-          if (!of_right(j, column).is_zero())
-            sum(i, j) += of_left(i, 0) * of_right(j, column).conjugate();
-      }
+  const int dimension = left[0].dimension();
+  const auto monomial = [](const IrrepMatrix& m) { return m.is_monomial(); };
+  const bool fast = std::ranges::all_of(left, monomial) && std::ranges::all_of(right, monomial);
+  for (int column = 0; column < dimension; ++column) {
+    ExactMatrix sum;
+    if (fast) {
+      const TraceMatrix traces = monomial_sum(left, right, column);
+      if (const auto result = monomial_multiple(traces, dimension)) return *result;
+      sum = ExactMatrix(index(dimension), index(dimension));
+      for (int i = 0; i < dimension; ++i)
+        for (int j = 0; j < dimension; ++j)
+          sum(index(i), index(j)) = to_cyclotomic(traces[index(i)][index(j)]);
+    } else {
+      sum = dense_sum(left, right, index(column));
     }
     if (!sum.is_zero()) return IrrepMatrix(normalized_unitary(sum));
   }

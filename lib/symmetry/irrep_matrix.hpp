@@ -2,6 +2,8 @@
 
 #include <array>
 #include <cstdint>
+#include <memory>
+#include <optional>
 #include <span>
 
 #include "exact/exact_matrix.hpp"
@@ -26,17 +28,19 @@ class IrrepMatrix {
   explicit IrrepMatrix(const ExactMatrix& matrix);
 
   int dimension() const noexcept { return dimension_; }
-  bool is_monomial() const noexcept { return dense_.rows() == 0; }
+  bool is_monomial() const noexcept { return dense_ == nullptr; }
   int column(int row) const { return column_[static_cast<std::size_t>(row)]; }
   int exponent(int row) const { return exponent_[static_cast<std::size_t>(row)]; }
   ExactMatrix to_exact() const;
+  /// The exponent m with this = ζ^m other, if there is one. REQUIRES: equal dimensions.
+  std::optional<int> ratio(const IrrepMatrix& other) const;
 
   /// ζ^exponent times the matrix.
   IrrepMatrix times_root(int exponent) const;
   IrrepMatrix adjoint() const;
   IrrepMatrix conjugate() const;
   friend IrrepMatrix operator*(const IrrepMatrix& a, const IrrepMatrix& b);
-  friend bool operator==(const IrrepMatrix& a, const IrrepMatrix& b) = default;
+  friend bool operator==(const IrrepMatrix& a, const IrrepMatrix& b);
 
   /// The trace on 1, ζ, …, ζ⁷: an algebraic integer, so the coefficients are integers.
   using Trace = std::array<std::int16_t, 8>;
@@ -46,7 +50,7 @@ class IrrepMatrix {
   std::uint8_t dimension_ = 1;
   std::array<std::uint8_t, largest> column_{};
   std::array<std::uint8_t, largest> exponent_{};
-  ExactMatrix dense_;
+  std::shared_ptr<const ExactMatrix> dense_;  ///< Shared by copies, never changed.
 };
 
 Cyclotomic to_cyclotomic(const IrrepMatrix::Trace& trace);

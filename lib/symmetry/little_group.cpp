@@ -6,6 +6,7 @@
 #include <numeric>
 #include <stdexcept>
 
+#include "crystal/fraction_matrix.hpp"
 #include "exact/checked.hpp"
 
 namespace spinsieve {
@@ -61,6 +62,20 @@ IntegerWavevector to_integers(const Wavevector& k) {
   result.rows[0] = scaled(k.constant);
   for (std::size_t p = 0; p < 3; ++p) result.rows[p + 1] = scaled(k.along[p]);
   return result;
+}
+
+/// Throws Error when the directions along u, v, w are linearly dependent.
+void require_independent_parameters(const Wavevector& k, const IntegerWavevector& ik) {
+  std::vector<FractionVector> rows;
+  for (std::size_t p = 0; p < 3; ++p)
+    if (ik.rows[p + 1] != IntVector{}) rows.push_back(k.along[p]);
+  if (rows.size() < 2) return;
+  const std::size_t directions = row_echelon(rows).size();
+  if (directions == rows.size()) return;
+  throw Error("the wavevector " + to_string(k) + " has " + std::to_string(rows.size()) +
+              " free parameters along " + std::to_string(directions) +
+              (directions == 1 ? " direction" : " directions") +
+              "; as many parameters as directions are accepted");
 }
 
 IntegerWavevector row_times(const IntegerWavevector& k, const IntMatrix& R) {
@@ -226,6 +241,7 @@ LittleGroup::LittleGroup(std::shared_ptr<const SymmetryTables> tables, const Wav
     : tables_(std::move(tables)), k_(k) {
   const SpaceGroup& group = tables_->group();
   const IntegerWavevector ik = to_integers(k);
+  require_independent_parameters(k, ik);
   self_conjugate_ = reciprocal_sum(*tables_, ik, ik, 1).has_value();
 
   std::vector<ArmKey> keys;
@@ -236,7 +252,10 @@ LittleGroup::LittleGroup(std::shared_ptr<const SymmetryTables> tables, const Wav
       operations_.push_back(i);
       g_.push_back(*g);
     }
-    if (reciprocal_sum(*tables_, image, ik, 1)) reversing_.push_back(i);
+    if (const auto K = reciprocal_sum(*tables_, image, ik, 1)) {
+      reversing_.push_back(i);
+      reversal_vectors_.push_back(*K);
+    }
     const ArmKey arm = key(*tables_, image);
     if (std::ranges::find(keys, arm) != keys.end()) continue;
     keys.push_back(arm);

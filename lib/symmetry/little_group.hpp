@@ -57,6 +57,8 @@ class SymmetryTables {
 /// operations that take k to −k. All decided exactly; with free parameters, for generic values.
 class LittleGroup {
  public:
+  /// Throws Error when k has more parameters than directions, a common denominator above 1000000,
+  /// or components so large that exact products would not fit.
   LittleGroup(std::shared_ptr<const SymmetryTables> tables, const Wavevector& k);
 
   const SymmetryTables& tables() const noexcept { return *tables_; }
@@ -83,6 +85,8 @@ class LittleGroup {
   /// Operations (group indices) with kR ≡ −k; all of operations() when 2k ≡ 0; empty when −k is
   /// not in the star.
   std::span<const std::size_t> reversing() const noexcept { return reversing_; }
+  /// kR + k of the i-th of reversing(): a reciprocal-lattice vector.
+  const IntVector& reversal_vector(std::size_t i) const { return reversal_vectors_[i]; }
   bool self_conjugate() const noexcept { return self_conjugate_; }  ///< 2k ≡ 0.
   bool minus_k_in_star() const noexcept { return !reversing_.empty(); }
 
@@ -103,6 +107,7 @@ class LittleGroup {
   std::vector<std::size_t> operations_;
   std::vector<IntVector> g_;
   std::vector<std::size_t> reversing_;
+  std::vector<IntVector> reversal_vectors_;
   bool self_conjugate_ = false;
   std::vector<Wavevector> star_;
   std::vector<std::size_t> arm_operation_;

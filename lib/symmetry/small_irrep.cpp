@@ -56,69 +56,79 @@ int conjugation_exponent(const SymmetryTables& tables, const IntVector& K, std::
   return tables.exponent(turned, of_s) + tables.exponent(K, of_t);
 }
 
-Reality herring(const LittleGroup& little_group, const std::vector<Trace>& characters) {
-  const SymmetryTables& tables = little_group.tables();
+/// A character of P at some position times ζ^exponent.
+struct Term {
+  std::size_t position = 0;
+  int exponent = 0;
+};
+
+std::size_t required_position(const LittleGroup& little_group, std::size_t operation) {
+  const std::optional<std::size_t> position = little_group.position(operation);
+  if (!position) throw std::logic_error("an operation outside the little group");
+  return *position;
+}
+
+/// The squares of the reversing operations {R|t}: tr D = exp(−2πi (kR + k)·t) tr P(R²).
+std::vector<Term> herring_terms(const LittleGroup& little_group) {
   const SpaceGroup& group = little_group.group();
-  std::array<int, 8> sum{};
-  for (const std::size_t a : little_group.reversing()) {
-    // K = kR + k, exact also with parameters, since those cancel.
-    const IntMatrix& R = group.operations()[a].rotation;
-    const FractionVector k = little_group.k().constant;
-    const FractionVector exact = row_times(k, R) + k;
-    const IntVector K{static_cast<int>(exact[0].numerator()),
-                      static_cast<int>(exact[1].numerator()),
-                      static_cast<int>(exact[2].numerator())};
-    const std::optional<std::size_t> square = little_group.position(group.product(a, a));
-    if (!square)
-      throw std::logic_error("the square of a reversing operation left the little group");
-    const Trace term = times_root(characters[*square], -tables.exponent(K, a));
-    for (std::size_t i = 0; i < 8; ++i) sum[i] += term[i];
+  std::vector<Term> terms;
+  for (std::size_t i = 0; i < little_group.reversing().size(); ++i) {
+    const std::size_t a = little_group.reversing()[i];
+    terms.push_back({required_position(little_group, group.product(a, a)),
+                     -little_group.tables().exponent(little_group.reversal_vector(i), a)});
+  }
+  return terms;
+}
+
+Reality herring(const std::vector<Term>& terms, const std::vector<Trace>& characters) {
+  Trace sum{};
+  for (const Term& term : terms) {
+    const Trace turned = times_root(characters[term.position], term.exponent);
+    for (std::size_t i = 0; i < 8; ++i) sum[i] = static_cast<std::int16_t>(sum[i] + turned[i]);
   }
   for (std::size_t i = 1; i < 8; ++i)
     if (sum[i] != 0) throw std::logic_error("a Herring sum that is not an integer");
-  const int order = static_cast<int>(little_group.order());
+  const int order = static_cast<int>(characters.size());
   if (sum[0] == order) return Reality::real;
   if (sum[0] == -order) return Reality::pseudoreal;
   if (sum[0] != 0) throw std::logic_error("a Herring sum outside 1, 0, -1");
   return Reality::complex;
 }
 
-IntVector reversal_vector(const LittleGroup& little_group, std::size_t a) {
-  const FractionVector& k = little_group.k().constant;
-  const FractionVector exact = row_times(k, little_group.group().operations()[a].rotation) + k;
-  return {static_cast<int>(exact[0].numerator()), static_cast<int>(exact[1].numerator()),
-          static_cast<int>(exact[2].numerator())};
-}
-
-/// Characters of P of the irrep g → D(a⁻¹ g a)*, with a taking k to −k.
-std::vector<Trace> reversed_characters(const LittleGroup& little_group,
-                                       const std::vector<Trace>& characters) {
+/// The irrep g → D(a⁻¹ g a)*, with a the first operation that takes k to −k: its P has the
+/// conjugate characters at these positions times these roots.
+std::vector<Term> reversed_terms(const LittleGroup& little_group) {
   const SymmetryTables& tables = little_group.tables();
   const SpaceGroup& group = little_group.group();
   const std::size_t a = little_group.reversing().front();
   const std::size_t a_inverse = group.inverse(a);
-  // K = kA⁻¹ + k.
-  const IntVector K = reversal_vector(little_group, a_inverse);
-  std::vector<Trace> result(characters.size());
-  for (std::size_t i = 0; i < characters.size(); ++i) {
+  std::size_t of_inverse = 0;
+  while (little_group.reversing()[of_inverse] != a_inverse) ++of_inverse;
+  const IntVector& K = little_group.reversal_vector(of_inverse);  // kA⁻¹ + k
+  std::vector<Term> terms;
+  for (std::size_t i = 0; i < little_group.order(); ++i) {
     const std::size_t g = little_group.operations()[i];
-    const std::size_t image = group.product(group.product(a_inverse, g), a);
-    const std::optional<std::size_t> position = little_group.position(image);
-    if (!position) throw std::logic_error("a conjugate operation left the little group");
-    const Trace& of_image = characters[*position];
-    Trace conjugate{};
-    for (int c = 0; c < 8; ++c) {
-      Trace unit{};
-      unit[0] = of_image[static_cast<std::size_t>(c)];
-      const Trace turned = times_root(unit, -c);
-      for (std::size_t d = 0; d < 8; ++d)
-        conjugate[d] = static_cast<std::int16_t>(conjugate[d] + turned[d]);
-    }
-    const int exponent = -tables.exponent(little_group.g(i), a) +
-                         conjugation_exponent(tables, K, a, group.operations()[g].rotation, g);
-    result[i] = times_root(conjugate, exponent);
+    terms.push_back({required_position(little_group, group.product(group.product(a_inverse, g), a)),
+                     -tables.exponent(little_group.g(i), a) +
+                         conjugation_exponent(tables, K, a, group.operations()[g].rotation, g)});
   }
+  return terms;
+}
+
+Trace conjugate(const Trace& trace) {
+  Trace result{};
+  for (int c = 0; c < 8; ++c)
+    if (const int factor = trace[static_cast<std::size_t>(c)]; factor != 0)
+      add_root(result, root_exponent(-c), factor);
   return result;
+}
+
+bool is_reversed(const std::vector<Term>& terms, const std::vector<Trace>& characters,
+                 const std::vector<Trace>& partner) {
+  for (std::size_t i = 0; i < terms.size(); ++i)
+    if (times_root(conjugate(characters[terms[i].position]), terms[i].exponent) != partner[i])
+      return false;
+  return true;
 }
 
 }  // namespace
@@ -171,24 +181,29 @@ std::vector<SmallIrrep> small_irreps(const LittleGroup& little_group) {
                                        group.operations()[g].rotation, g);
   }
 
+  const std::vector<Term> squares = herring_terms(little_group);
   std::vector<SmallIrrep> irreps(found.size());
   for (std::size_t n = 0; n < found.size(); ++n) {
     SmallIrrep& irrep = irreps[n];
     irrep.label = "Γ" + std::to_string(n + 1);
     irrep.dimension = found[n].matrices[0].dimension();
+    irrep.matrices.reserve(little_group.order());
+    irrep.characters.reserve(little_group.order());
     for (std::size_t i = 0; i < little_group.order(); ++i) {
       irrep.matrices.push_back(found[n].matrices[source[i]].times_root(exponent[i]));
       irrep.characters.push_back(times_root(found[n].characters[source[i]], exponent[i]));
     }
     irrep.reality =
-        little_group.minus_k_in_star() ? herring(little_group, irrep.characters) : Reality::complex;
+        little_group.minus_k_in_star() ? herring(squares, irrep.characters) : Reality::complex;
   }
   if (!little_group.minus_k_in_star()) return irreps;
+  const std::vector<Term> reversed = reversed_terms(little_group);
   for (SmallIrrep& irrep : irreps) {
     if (irrep.reality != Reality::complex) continue;
-    const std::vector<Trace> wanted = reversed_characters(little_group, irrep.characters);
-    const auto partner =
-        std::ranges::find_if(irreps, [&](const SmallIrrep& s) { return s.characters == wanted; });
+    const auto partner = std::ranges::find_if(irreps, [&](const SmallIrrep& other) {
+      return other.dimension == irrep.dimension &&
+             is_reversed(reversed, irrep.characters, other.characters);
+    });
     if (partner == irreps.end()) throw std::logic_error("a complex irrep without its partner");
     irrep.partner = static_cast<std::size_t>(partner - irreps.begin());
   }
@@ -204,17 +219,16 @@ std::optional<Reversal> reversal(const LittleGroup& little_group, const SmallIrr
   result.sign = irrep.reality == Reality::real ? 1 : -1;
   const std::size_t a = result.operation;
   const std::size_t a_inverse = group.inverse(a);
-  const IntVector K = reversal_vector(little_group, a);
+  const IntVector& K = little_group.reversal_vector(0);
   // U P(R)* = ζ^e P(ARA⁻¹) U with e = g_ARA⁻¹·s − (kA + k)·t for a = {A|s}, R's translation t.
   std::vector<IrrepMatrix> left;
   std::vector<IrrepMatrix> right;
   for (std::size_t i = 0; i < little_group.order(); ++i) {
     const std::size_t g = little_group.operations()[i];
-    const std::optional<std::size_t> image =
-        little_group.position(group.product(group.product(a, g), a_inverse));
-    if (!image) throw std::logic_error("a conjugate operation left the little group");
-    left.push_back(irrep.matrices[*image].times_root(tables.exponent(little_group.g(*image), a) -
-                                                     tables.exponent(K, g)));
+    const std::size_t image =
+        required_position(little_group, group.product(group.product(a, g), a_inverse));
+    left.push_back(irrep.matrices[image].times_root(tables.exponent(little_group.g(image), a) -
+                                                    tables.exponent(K, g)));
     right.push_back(irrep.matrices[i].conjugate());
   }
   if (irrep.dimension > 1) result.matrix = unitary_intertwiner(left, right);

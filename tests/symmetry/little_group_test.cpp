@@ -112,6 +112,17 @@ TEST(LittleGroupTest, LargeComponentsStayExact) {
                Error);
 }
 
+TEST(LittleGroupTest, RefusesParametersWithoutDirection) {
+  const SpaceGroup group = SpaceGroup::from_number(47);
+  EXPECT_THAT(([&] {
+                little_group_of(group, parse({"u+v", "1/2", "2u+2v"}));
+              }),
+              ThrowsMessage<Error>("the wavevector u+v, 1/2, 2u+2v has 2 free parameters along 1 "
+                                   "direction; as many parameters as directions are accepted"));
+  EXPECT_THROW(little_group_of(group, parse({"u+v+w", "v", "u+w"})), Error);
+  EXPECT_NO_THROW(little_group_of(group, parse({"u+v", "u-v", "w"})));
+}
+
 TEST(LittleGroupTest, SymbolicWavevectorsWithSeveralParameters) {
   const SpaceGroup group = SpaceGroup::from_number(221);
   const struct {

@@ -115,7 +115,7 @@ TEST(SettingsSlowTest, OddOriginsChangeNothingButPhasesInAllGroups) {
     ASSERT_NO_FATAL_FAILURE(expect_same_after_shift(number, s));
 }
 
-/// x = P x' with P unimodular or a supercell inverse: rows of components go to k P.
+/// x = P x' with P unimodular or the primitive basis.
 SpaceGroup in_axes(const SpaceGroup& group, const FractionMatrix& P) {
   const FractionMatrix back = inverse(P);
   std::vector<Operation> operations;
@@ -146,6 +146,23 @@ TEST(SettingsTest, PrimitiveAxesOfCentredGroupsShowTheSameIrreps) {
     EXPECT_EQ(primitive.centrings().size(), 1U);
     EXPECT_EQ(primitive.order(), group.order());
     EXPECT_EQ(signatures(primitive), signatures(group));
+  }
+}
+
+TEST(SettingsTest, ObliqueAxesShowTheSameIrreps) {
+  const FractionMatrix P = to_fractions({{{1, 2, 0}, {0, 1, 0}, {-1, 1, 1}}});
+  for (const int number : {14, 19, 43, 62, 92, 122, 161, 167, 185, 198, 205, 214, 220, 227, 230}) {
+    SCOPED_TRACE("group " + std::to_string(number));
+    const SpaceGroup group = SpaceGroup::from_number(number);
+    const SpaceGroup oblique = in_axes(group, P);
+    EXPECT_EQ(oblique.hall_number(), 0) << "no tabulated setting";
+    EXPECT_EQ(signatures(oblique), signatures(group));
+    const auto tables = std::make_shared<const SymmetryTables>(oblique);
+    for (const Stratum& stratum : strata(*tables)) {
+      const LittleGroup at(tables, generic_point(stratum.k));
+      ASSERT_EQ(broken_law(at), "");
+      ASSERT_EQ(broken_law(at, small_irreps(at)), "") << "k = " << to_string(at.k());
+    }
   }
 }
 

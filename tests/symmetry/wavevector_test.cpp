@@ -37,7 +37,7 @@ TEST(WavevectorTest, ReadsAndPrintsComponents) {
 }
 
 TEST(WavevectorTest, RefusesWhatIsNoComponent) {
-  for (const char* text : {"", "x", "1/0", "u*2", "1//2", "uu", "1/2-", "--u", "u1", "1 2 3 q"}) {
+  for (const char* text : {"", "x", "1/0", "u*2", "1//2", "uu", "1/2-", "--u", "u1", "1 2"}) {
     SCOPED_TRACE(text);
     Wavevector k;
     EXPECT_THROW(parse_component(text, 0, k), Error);
