@@ -128,9 +128,13 @@ std::string to_string(const TensorForm& form) {
   return result + (vector ? ")" : "]");
 }
 
+TensorForm moment_form(std::span<const PrimedRotation> operations) {
+  static const std::vector<std::string> names = {"mx", "my", "mz"};
+  return vector_form(operations, Parity::axial, names);
+}
+
 BulkProperties bulk_properties(const MagneticPointGroup& group,
                                std::span<const IntMatrix> parent_rotations) {
-  static const std::vector<std::string> moment = {"mx", "my", "mz"};
   static const std::vector<std::string> dipole = {"px", "py", "pz"};
   static const std::vector<std::string> electric = magnetoelectric_names();
   static const std::vector<std::string> stress = piezomagnetic_names();
@@ -141,7 +145,7 @@ BulkProperties bulk_properties(const MagneticPointGroup& group,
 
   BulkProperties result;
   result.magnetic_point_group = group.symbol();
-  result.net_moment = vector_form(generators, Parity::axial, moment);
+  result.net_moment = moment_form(generators);
   result.polarisation = vector_form(generators, Parity::polar, dipole);
   result.polarisation_newly_allowed =
       result.polarisation.independent > vector_form(parent, Parity::polar, dipole).independent;

@@ -23,6 +23,10 @@ struct TensorForm {
 /// "(mx,2mx,0)" for one row; otherwise rows in brackets: "[xx xy 0; -xy xx 0; 0 0 zz]".
 std::string to_string(const TensorForm& form);
 
+/// What a set of operations leaves of a moment, an axial vector that time reversal turns over: mx,
+/// my, mz on the unit vectors along a, b, c. The operations need not be a whole group.
+TensorForm moment_form(std::span<const PrimedRotation> operations);
+
 /// Macroscopic effects that a magnetic point group allows.
 ///
 /// Under an operation of rotation part R, with sign −1 for a primed one where the quantity changes

@@ -4,6 +4,7 @@
 #include <array>
 #include <charconv>
 #include <map>
+#include <mutex>
 #include <string>
 
 #include "arrangement/embedded_data.hpp"
@@ -41,7 +42,7 @@ void require_type_number(int uni_number) {
 }
 
 /// Running number of the standard setting of each space group, by space-group number.
-std::array<int, 231> standard_settings() {
+std::array<int, 231> find_standard_settings() {
   std::array<int, 231> result{};
   for (int hall_number = 1; hall_number <= 530; ++hall_number) {
     const HallSetting setting = hall_setting(hall_number);
@@ -49,6 +50,11 @@ std::array<int, 231> standard_settings() {
     if (chosen == 0 || setting.choice == "2") chosen = hall_number;
   }
   return result;
+}
+
+int standard_setting(int number) {
+  static const std::array<int, 231> settings = find_standard_settings();
+  return settings.at(static_cast<std::size_t>(number));
 }
 
 /// The primed translations of C_ccc2, C_acc2 and C_Acc2, whose unprimed operations spglib 2.0.2
@@ -137,13 +143,59 @@ MagneticReference reference(int uni_number) {
   return result;
 }
 
-std::map<std::vector<int>, std::vector<MagneticReference>> all_references() {
-  std::map<std::vector<int>, std::vector<MagneticReference>> result;
-  for (int uni_number = 1; uni_number <= type_count; ++uni_number) {
-    MagneticReference entry = reference(uni_number);
-    result[entry.group.invariants()].push_back(std::move(entry));
+/// Number of the leading space group of a type.
+int leading_number(int uni_number) {
+  const std::string_view text = magnetic_symbols(uni_number).bns_number;
+  int number = 0;
+  std::from_chars(text.data(), text.data() + text.size(), number);
+  return number;
+}
+
+/// The last space-group number of each of the 32 crystal classes.
+constexpr std::array<int, 32> last_of_class = {
+    1,   2,   5,   9,   15,  24,  46,  74,  80,  82,  88,  98,  110, 122, 142, 146,
+    148, 155, 161, 167, 173, 174, 176, 182, 186, 190, 194, 199, 206, 214, 220, 230};
+
+std::size_t class_of_number(int number) {
+  return static_cast<std::size_t>(std::ranges::lower_bound(last_of_class, number) -
+                                  last_of_class.begin());
+}
+
+/// Kinds of rotations, sorted: different for each crystal class.
+std::vector<int> census(std::span<const PrimitiveMagneticGroup::Element> elements) {
+  std::vector<int> result;
+  result.reserve(elements.size());
+  for (const auto& element : elements)
+    result.push_back(determinant(element.rotation) * rotation_order(element.rotation));
+  std::ranges::sort(result);
+  return result;
+}
+
+std::map<std::vector<int>, std::size_t> classes_by_census() {
+  std::map<std::vector<int>, std::size_t> result;
+  for (std::size_t i = 0; i < last_of_class.size(); ++i) {
+    std::vector<PrimedOperation> operations;
+    for (const Operation& operation : hall_operations(standard_setting(last_of_class.at(i))))
+      operations.push_back({operation, false});
+    result[census(PrimitiveMagneticGroup(operations, RationalLattice().basis()).elements())] = i;
   }
   return result;
+}
+
+/// The types of one crystal class and one kind (1 … 4), set up when first asked for.
+struct ReferenceShelf {
+  std::once_flag once;
+  std::map<std::vector<int>, std::vector<MagneticReference>> by_invariants;
+};
+
+void fill(ReferenceShelf& shelf, std::size_t crystal_class, int type) {
+  for (int uni_number = 1; uni_number <= type_count; ++uni_number) {
+    if (magnetic_symbols(uni_number).type != type ||
+        class_of_number(leading_number(uni_number)) != crystal_class)
+      continue;
+    MagneticReference entry = reference(uni_number);
+    shelf.by_invariants[entry.group.invariants()].push_back(std::move(entry));
+  }
 }
 
 }  // namespace
@@ -155,9 +207,7 @@ const MagneticSymbols& magnetic_symbols(int uni_number) {
 }
 
 std::vector<PrimedOperation> standard_magnetic_operations(int uni_number) {
-  static const std::array<int, 231> settings = standard_settings();
-  require_type_number(uni_number);
-  const int setting = settings.at(static_cast<std::size_t>(magnetic_type(uni_number).number));
+  const int setting = standard_setting(leading_number(uni_number));
   for (const auto& [number, antitranslation] : corrected_types)
     if (number == uni_number)
       return with_antitranslation(hall_operations(setting), antitranslation);
@@ -167,10 +217,16 @@ std::vector<PrimedOperation> standard_magnetic_operations(int uni_number) {
   return operations;
 }
 
-std::span<const MagneticReference> magnetic_references(const std::vector<int>& invariants) {
-  static const auto references = all_references();
-  const auto found = references.find(invariants);
-  if (found == references.end()) return {};
+std::span<const MagneticReference> magnetic_references(const PrimitiveMagneticGroup& group) {
+  static const auto classes = classes_by_census();
+  static std::array<ReferenceShelf, 4 * last_of_class.size()> shelves;
+  const auto crystal_class = classes.find(census(group.elements()));
+  if (crystal_class == classes.end()) return {};
+  const std::size_t index = 4 * crystal_class->second + static_cast<std::size_t>(group.type() - 1);
+  ReferenceShelf& shelf = shelves.at(index);
+  std::call_once(shelf.once, [&] { fill(shelf, crystal_class->second, group.type()); });
+  const auto found = shelf.by_invariants.find(group.invariants());
+  if (found == shelf.by_invariants.end()) return {};
   return found->second;
 }
 

@@ -35,7 +35,8 @@ struct MagneticReference {
   CongruenceSystem origin;  ///< (1 − R) a ≡ …, three rows for each generator.
 };
 
-/// The types with these invariants, by increasing number; usually one to a few.
-std::span<const MagneticReference> magnetic_references(const std::vector<int>& invariants);
+/// The types with the invariants of a group, by increasing number; usually one to a few.
+/// Cost: the first call for a crystal class and type sets up its rows; safe from any thread.
+std::span<const MagneticReference> magnetic_references(const PrimitiveMagneticGroup& group);
 
 }  // namespace spinsieve

@@ -212,7 +212,7 @@ MagneticGroup MagneticGroup::from_operations(std::span<const PrimedOperation> op
                                              std::span<const FractionVector> lattice_generators) {
   const PrimitiveMagneticGroup group(operations, lattice_generators);
   std::vector<Match> matches;
-  for (const MagneticReference& reference : magnetic_references(group.invariants())) {
+  for (const MagneticReference& reference : magnetic_references(group)) {
     for (const IntMatrix& N : axis_changes(group.system()))
       if (auto found = match(group, reference, N)) matches.push_back(*std::move(found));
     if (!matches.empty()) break;
