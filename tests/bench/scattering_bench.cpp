@@ -172,18 +172,29 @@ void plain(benchmark::State& state) {
   report(state, problem);
 }
 
-/// The most the core does with the flags of this build: independent multiply-adds in registers.
+#if defined(__x86_64__) && !defined(__SANITIZE_ADDRESS__)
+#define SPINSIEVE_CLONES \
+  __attribute__((target_clones("fma", "default")))  // as the library's kernel
+#else
+#define SPINSIEVE_CLONES
+#endif
+
+constexpr std::size_t chains = 48;
+
+SPINSIEVE_CLONES void multiply_add_rounds(std::array<double, chains>& sums, double factor,
+                                          double step, std::size_t rounds) {
+  std::array<double, chains> local = sums;
+  for (std::size_t r = 0; r < rounds; ++r)
+    for (double& sum : local) sum = sum * factor + step;
+  sums = local;
+}
+
+/// The most the core does with the flags of the kernel: independent multiply-adds in registers.
 void multiply_add(benchmark::State& state) {
-  constexpr std::size_t chains = 32;
   constexpr std::size_t rounds = 100'000;
   std::array<double, chains> sums{};
-  double factor = 0.999999;
-  double step = 1e-9;
-  benchmark::DoNotOptimize(factor);
-  benchmark::DoNotOptimize(step);
   for (auto _ : state) {
-    for (std::size_t r = 0; r < rounds; ++r)
-      for (double& sum : sums) sum = sum * factor + step;
+    multiply_add_rounds(sums, 0.999999, 1e-9, rounds);
     benchmark::DoNotOptimize(sums);
   }
   state.counters["flop/s"] =
