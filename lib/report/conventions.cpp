@@ -26,7 +26,9 @@ std::vector<std::pair<std::string, std::string>> conventions(PhaseSign phase) {
       {"labels",
        "small irreps Γ1, Γ2, … are numbered by dimension, then by their characters; a label "
        "holds for one setting of the group and the k printed, and its characters define it"},
-      {"basis", "the first non-zero entry of a basis vector is 1; e(x) = exp(2πi x)"},
+      {"basis",
+       "basis vectors are on the lattice basis a, b, c, scaled so that the first non-zero entry is "
+       "1; e(x) = exp(2πi x)"},
       {"moments", "µB along the unit vectors a/|a|, b/|b|, c/|c|"},
       {"intensities",
        "|F⊥|² in µB² and p²|F⊥|² in barn, p = 2.695 fm per µB, per conventional parent "
@@ -59,6 +61,8 @@ Json document_head(std::string_view schema, const ReportOptions& options, const 
   setting.set("hall_symbol", group.hall_symbol());
   setting.set("setting", group.setting());
   head.set("space_group", std::move(setting));
+  head.set("notes", Json::array_of(options.notes));
+  head.set("warnings", Json::array_of(options.warnings));
   return head;
 }
 
@@ -67,6 +71,8 @@ void start_page(TextPage& page, std::string_view command, const ReportOptions& o
   page.heading(options.title.empty() ? std::string(command)
                                      : std::string(command) + ": " + options.title);
   page.item("Space group", group_text(group), 14);
+  for (const std::string& note : options.notes) page.item("Note", note, 14);
+  for (const std::string& warning : options.warnings) page.item("Warning", warning, 14);
 }
 
 void end_page(TextPage& page, const ReportOptions& options,

@@ -20,6 +20,8 @@ struct ReportOptions {
   std::string title;
   Letters letters = Letters::trade;
   PhaseSign phase = PhaseSign::plus;
+  std::vector<std::string> notes;     ///< What was done to the input: the setting, sites moved.
+  std::vector<std::string> warnings;  ///< What is likely not meant.
 };
 
 /// The conventions that results are printed in, as pairs of a key and a sentence.

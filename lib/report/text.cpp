@@ -13,6 +13,8 @@
 namespace spinsieve {
 namespace {
 
+constexpr std::size_t column_gap = 2;
+
 /// The code point at the start of the text and its bytes; a stray byte counts as one letter.
 std::pair<std::uint32_t, std::size_t> code_point(std::string_view text) {
   const auto byte = [text](std::size_t i) {
@@ -159,14 +161,13 @@ std::vector<std::string> Table::lines(std::size_t width, Letters letters) const 
     for (const std::string& cell : row) rows.back().push_back(in_letters(cell));
   }
 
-  constexpr std::size_t gap = 2;
   constexpr std::size_t narrowest = 12;
   std::vector<std::size_t> widths(columns_.size(), 0);
   for (const std::vector<std::string>& row : rows)
     for (std::size_t i = 0; i < row.size(); ++i)
       for (const std::string& part : wrapped(row[i], std::string::npos))
         widths[i] = std::max(widths[i], display_width(part));
-  const std::size_t gaps = gap * (columns_.size() - 1);
+  const std::size_t gaps = column_gap * (columns_.size() - 1);
   while (std::accumulate(widths.begin(), widths.end(), gaps) > width) {
     std::size_t widest = columns_.size();  // The widest column that may be broken.
     for (std::size_t i = 0; i < columns_.size(); ++i)
@@ -191,7 +192,7 @@ std::vector<std::string> Table::lines(std::size_t width, Letters letters) const 
         const std::string cell = at < parts[i].size() ? parts[i][at] : "";
         const std::size_t used = display_width(cell);
         const std::string blanks(widths[i] > used ? widths[i] - used : 0, ' ');
-        if (i > 0) line.append(gap, ' ');
+        if (i > 0) line.append(column_gap, ' ');
         line += columns_[i].align == Align::right ? blanks + cell : cell + blanks;
       }
       line.erase(line.find_last_not_of(' ') + 1);
@@ -202,12 +203,55 @@ std::vector<std::string> Table::lines(std::size_t width, Letters letters) const 
   std::string rule;
   const std::string dash = letters == Letters::plain ? "-" : "─";
   for (std::size_t i = 0; i < widths.size(); ++i) {
-    if (i > 0) rule.append(gap, ' ');
+    if (i > 0) rule.append(column_gap, ' ');
     for (std::size_t n = 0; n < widths[i]; ++n) rule += dash;
   }
+  rule.erase(rule.find_last_not_of(' ') + 1);
   lines.push_back(rule);
   for (std::size_t i = 1; i < rows.size(); ++i) add_row_lines(rows[i]);
   return lines;
+}
+
+std::vector<Table> fitting_tables(const std::vector<Table::Column>& left,
+                                  const std::vector<Table::Column>& right,
+                                  const std::vector<std::vector<std::string>>& rows,
+                                  std::size_t width, Letters letters) {
+  const auto shown_width = [letters](const std::string& text) {
+    return display_width(letters == Letters::plain ? to_plain(text) : text) + column_gap;
+  };
+  const auto column_width = [&](std::size_t column, const std::string& heading) {
+    std::size_t widest = shown_width(heading);
+    for (const auto& row : rows) widest = std::max(widest, shown_width(row[column]));
+    return widest;
+  };
+  std::size_t left_width = 0;
+  for (std::size_t i = 0; i < left.size(); ++i) left_width += column_width(i, left[i].heading);
+
+  std::vector<Table> tables;
+  for (std::size_t first = 0; first < right.size();) {
+    std::size_t used = left_width;
+    std::size_t last = first;
+    while (last < right.size()) {
+      const std::size_t wanted = column_width(left.size() + last, right[last].heading);
+      if (last > first && used + wanted > width + column_gap) break;
+      used += wanted;
+      ++last;
+    }
+    std::vector<Table::Column> columns = left;
+    columns.insert(columns.end(), right.begin() + static_cast<std::ptrdiff_t>(first),
+                   right.begin() + static_cast<std::ptrdiff_t>(last));
+    Table table(columns);
+    for (const auto& row : rows) {
+      const auto right_cells = row.begin() + static_cast<std::ptrdiff_t>(left.size());
+      std::vector<std::string> cells(row.begin(), right_cells);
+      cells.insert(cells.end(), right_cells + static_cast<std::ptrdiff_t>(first),
+                   right_cells + static_cast<std::ptrdiff_t>(last));
+      table.add_row(std::move(cells));
+    }
+    tables.push_back(std::move(table));
+    first = last;
+  }
+  return tables;
 }
 
 std::string TextPage::in_letters(std::string_view text) const {

@@ -55,6 +55,13 @@ class Table {
   std::vector<std::vector<std::string>> rows_;
 };
 
+/// Rows with many columns as tables one below the other, each within the width: the left columns
+/// are repeated, the right ones shared out. rows: the cells of left and right columns.
+std::vector<Table> fitting_tables(const std::vector<Table::Column>& left,
+                                  const std::vector<Table::Column>& right,
+                                  const std::vector<std::vector<std::string>>& rows,
+                                  std::size_t width, Letters letters);
+
 /// A page of text for people, built from top to bottom.
 class TextPage {
  public:
@@ -68,6 +75,7 @@ class TextPage {
   void item(std::string_view name, std::string_view text, std::size_t name_width);
   void table(const Table& table);
   void blank();
+  Letters letters() const noexcept { return letters_; }
 
   const std::string& text() const noexcept { return text_; }
 
