@@ -25,6 +25,12 @@ struct Command {
   Outcome (*run)(const CommandLine& call, Executor& executor) = nullptr;
 };
 
+Outcome run_modes(const CommandLine& call, Executor& executor);
+Outcome run_enumerate(const CommandLine& call, Executor& executor);
+Outcome run_peaks(const CommandLine& call, Executor& executor);
+Outcome run_rank(const CommandLine& call, Executor& executor);
+Outcome run_locate(const CommandLine& call, Executor& executor);
+
 /// The commands that work, in the order of a person's work.
 std::span<const Command> commands();
 /// Null when the name is unknown.

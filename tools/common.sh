@@ -4,11 +4,12 @@
 build_packages=(
   g++ cmake ninja-build git
   libsymspg-dev libeigen3-dev libboost-dev libfmt-dev libyaml-cpp-dev nlohmann-json3-dev
-  libcli11-dev libtbb-dev
+  gemmi-dev tao-pegtl-dev libcli11-dev libtbb-dev
 )
 check_packages=(
   googletest libgtest-dev libgmock-dev libbenchmark-dev
   clang-14 clang-tidy-14 clang-format-14 libclang-rt-14-dev
+  python3 python3-periodictable
 )
 
 # install_packages NAME…: installs what is missing, asks nothing; root, or whoever may use sudo.

@@ -18,11 +18,6 @@ if(SPINSIEVE_SANITIZE)
   add_compile_options(-fsanitize=address,undefined -fno-sanitize-recover=all -fno-omit-frame-pointer)
   add_link_options(-fsanitize=address,undefined)
 endif()
-if(SPINSIEVE_FUZZ)
-  # Coverage feedback everywhere, the fuzzer's main only in the fuzz targets.
-  add_compile_options(-fsanitize=fuzzer-no-link,address,undefined -fno-sanitize-recover=all)
-  add_link_options(-fsanitize=address,undefined)
-endif()
 
 # spinsieve_stage(<stage> SOURCES a.cpp … HEADERS a.hpp … [LIBRARIES Eigen3::Eigen …])
 function(spinsieve_stage stage)
@@ -76,14 +71,6 @@ function(spinsieve_tests name last)
     DISCOVERY_TIMEOUT 120 PROPERTIES TIMEOUT 600)
   gtest_discover_tests(${name}_tests TEST_PREFIX ${name}. TEST_FILTER "*Slow*"
     DISCOVERY_TIMEOUT 120 PROPERTIES TIMEOUT 1800 LABELS slow)
-endfunction()
-
-# spinsieve_fuzz(<name> <last stage> source.cpp): a libFuzzer target build/fuzz/<name>_fuzz.
-function(spinsieve_fuzz name last)
-  add_executable(${name}_fuzz ${ARGN})
-  spinsieve_link_stages(${name}_fuzz ${last})
-  target_link_options(${name}_fuzz PRIVATE -fsanitize=fuzzer)
-  set_target_properties(${name}_fuzz PROPERTIES RUNTIME_OUTPUT_DIRECTORY ${PROJECT_BINARY_DIR})
 endfunction()
 
 # spinsieve_embed(<stage> <variable prefix> files…): each file becomes a std::string_view
