@@ -36,13 +36,10 @@ Eigen::MatrixXd slopes_of_equalities(const CandidateModel& model, const Eigen::V
   return slopes;
 }
 
-/// A random point that meets the equalities, and the directions that stay on them.
-Eigen::MatrixXd tangent_at_random_point(const CandidateModel& model, Eigen::VectorXd& c) {
+/// Directions that stay on the equalities at c, to first order.
+Eigen::MatrixXd tangent(const CandidateModel& model, const Eigen::VectorXd& c) {
+  if (model.equalities.empty()) return Eigen::MatrixXd::Identity(c.size(), c.size());
   Eigen::VectorXd values;
-  for (int step = 0; step < equality_steps; ++step) {
-    const Eigen::MatrixXd slopes = slopes_of_equalities(model, c, values);
-    c -= slopes.completeOrthogonalDecomposition().solve(values);
-  }
   const Eigen::MatrixXd slopes = slopes_of_equalities(model, c, values);
   const Eigen::JacobiSVD<Eigen::MatrixXd> svd(slopes, Eigen::ComputeFullV);
   Eigen::Index rank = 0;
@@ -53,6 +50,17 @@ Eigen::MatrixXd tangent_at_random_point(const CandidateModel& model, Eigen::Vect
 }
 
 }  // namespace
+
+Eigen::VectorXd random_parameters(const CandidateModel& model, RandomDraws& random) {
+  Eigen::VectorXd c = random.normal_vector(model.forms.parameters());
+  if (model.equalities.empty()) return c;
+  Eigen::VectorXd values;
+  for (int step = 0; step < equality_steps; ++step) {
+    const Eigen::MatrixXd slopes = slopes_of_equalities(model, c, values);
+    c -= slopes.completeOrthogonalDecomposition().solve(values);
+  }
+  return c;
+}
 
 std::size_t effective_parameters(const FitData& data, const CandidateModel& model) {
   const FormFamily& forms = model.forms;
@@ -69,16 +77,15 @@ std::size_t effective_parameters(const FitData& data, const CandidateModel& mode
   RandomDraws random(rank_seed);
   std::size_t best = 0;
   for (int attempt = 0; attempt < rank_points; ++attempt) {
-    Eigen::VectorXd c = random.normal_vector(forms.parameters());
-    Eigen::MatrixXd tangent = Eigen::MatrixXd::Identity(c.size(), c.size());
-    if (!model.equalities.empty()) tangent = tangent_at_random_point(model, c);
+    const Eigen::VectorXd c = random_parameters(model, random);
+    const Eigen::MatrixXd T = tangent(model, c);
     const Eigen::MatrixXd slopes = forms.jacobian(c);
-    const Eigen::Index n = tangent.cols();
+    const Eigen::Index n = T.cols();
     Eigen::MatrixXd jacobian = Eigen::MatrixXd::Zero(forms.size() + measured_slots, n + slots);
     for (Eigen::Index s = 0; s < forms.size(); ++s) {
       const MeasuredPoint& point = data.points()[static_cast<std::size_t>(s)];
       if (is_one_sided(point.kind) || !(norms(s) > extinct_form * largest)) continue;
-      jacobian.row(s).head(n).noalias() = slopes.row(s) * tangent / norms(s);
+      jacobian.row(s).head(n).noalias() = slopes.row(s) * T / norms(s);
       const std::optional<std::size_t>& slot = slot_of[point.scale_group];
       if (slot)
         jacobian(s, n + static_cast<Eigen::Index>(*slot)) = 0.5 * slopes.row(s).dot(c) / norms(s);

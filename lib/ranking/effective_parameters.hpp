@@ -17,6 +17,11 @@ namespace spinsieve {
 /// Cost: a few pivoted decompositions of N × n.
 std::size_t effective_parameters(const FitData& data, const CandidateModel& model);
 
+class RandomDraws;
+
+/// A random parameter vector of normal entries, moved onto the candidate's equalities.
+Eigen::VectorXd random_parameters(const CandidateModel& model, RandomDraws& random);
+
 /// Singular values below this part of the largest are rounding: forms carry 1e-12 at worst, and no
 /// measurement resolves intensities to 1e-7 of the strongest response.
 constexpr double rank_tolerance = 1e-7;

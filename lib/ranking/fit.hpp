@@ -14,14 +14,17 @@ namespace spinsieve {
 
 struct FitOptions {
   std::uint64_t seed = 1;
-  std::size_t least_starts = 8;  ///< Before the stopping rule may end the search.
+  std::size_t least_starts = 16;  ///< Before the stopping rule may end the search.
   std::size_t most_starts = 400;
   std::vector<Eigen::VectorXd> starts;  ///< Tried first: n parameters each.
+  /// A certified lower bound: a minimum that meets it is global, and the search ends.
+  std::optional<double> lower_bound;
 };
 
 enum class FitStop {
   closed_form,  ///< At most one seen parameter: the minimum is unique.
   rule,         ///< The stopping rule expects no further minimum.
+  bound,        ///< A minimum met the certified lower bound: it is global.
   limit         ///< `most_starts` were spent before the rule was met.
 };
 

@@ -17,6 +17,9 @@ constexpr double extinct_form = 1e-12;
 /// orders below, and a real direction this weak would need moments 1e6 times the others.
 constexpr double unseen_direction = 1e-12;
 
+/// A sum of positive semidefinite forms has no eigenvalue below this part of the largest.
+constexpr double indefinite = 1e-10;
+
 }  // namespace
 
 std::vector<std::optional<std::size_t>> scale_slots(const FitData& data) {
@@ -79,10 +82,25 @@ void ReducedProblem::find_basis(const CandidateModel& model) {
     if (limit.form.norm() > 0) A += limit.form / limit.form.norm();
   for (const Eigen::MatrixXd& E : model.equalities)
     if (E.norm() > 0) A += E * E.transpose() / E.squaredNorm();
-  const Eigen::SelfAdjointEigenSolver<Eigen::MatrixXd> eigen(A);
-  const double top = n > 0 ? eigen.eigenvalues()(n - 1) : 0;
+  Eigen::SelfAdjointEigenSolver<Eigen::MatrixXd> eigen(A);
+  double least = unseen_direction * eigen.eigenvalues()(n - 1);
+  if (eigen.eigenvalues()(0) < -indefinite * eigen.eigenvalues().cwiseAbs().maxCoeff()) {
+    // Forms that are no sums of squares may cancel in A; their squares cannot.
+    A.setZero();
+    for (Eigen::Index s = 0; s < model.forms.size(); ++s) {
+      const double norm = model.forms.columns().col(s).norm();
+      if (norm > extinct_form * largest)
+        A += model.forms.form(s) * model.forms.form(s) / (norm * norm);
+    }
+    for (const QuadraticLimit& limit : model.limits)
+      if (limit.form.norm() > 0) A += limit.form / limit.form.norm();
+    for (const Eigen::MatrixXd& E : model.equalities)
+      if (E.norm() > 0) A += E * E.transpose() / E.squaredNorm();
+    eigen.compute(A);
+    least = unseen_direction * unseen_direction * eigen.eigenvalues()(n - 1);
+  }
   Eigen::Index hidden = 0;
-  while (hidden < n && !(eigen.eigenvalues()(hidden) > unseen_direction * top)) ++hidden;
+  while (hidden < n && !(eigen.eigenvalues()(hidden) > least)) ++hidden;
   unseen_ = eigen.eigenvectors().leftCols(hidden);
   basis_ = eigen.eigenvectors().rightCols(n - hidden);
   for (Eigen::Index j = 0; j < basis_.cols(); ++j)
