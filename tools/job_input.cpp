@@ -92,6 +92,11 @@ std::vector<WavevectorModes> wavevector_modes(const Job& job,
 }
 
 std::vector<Candidate> candidates_of(const Job& job, std::span<const WavevectorModes> wavevectors) {
+  for (std::size_t i = 0; i < job.propagation.size(); ++i)
+    if (job.propagation[i].is_symbolic())
+      throw Error(job.propagation_places[i], "the wavevector " + to_string(job.propagation[i]) +
+                                                 " has free parameters; arrangements need numbers, "
+                                                 "such as 1/4 for u");
   std::vector<Candidate> candidates = enumerate_candidates(wavevectors, job.search);
   if (candidates.empty())
     throw Error(job.place, "symmetry allows no ordered moments on these sites at this wavevector");

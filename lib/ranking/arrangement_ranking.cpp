@@ -1,6 +1,7 @@
 #include "ranking/arrangement_ranking.hpp"
 
 #include <algorithm>
+#include <cmath>
 #include <numeric>
 
 #include "ranking/observed.hpp"
@@ -12,6 +13,10 @@ namespace {
 /// Phases round half a turn at which a modulated moment is held below its limit; between two the
 /// moment exceeds the largest sampled one by less than 1 %.
 constexpr std::size_t limit_phases = 12;
+
+/// Criteria that differ by less than 1e-6 are rounding: such candidates keep the order of their
+/// ids.
+constexpr double tie_steps = 1e6;
 
 std::vector<Arm> arms_of(std::span<const Candidate> candidates) {
   std::vector<Arm> arms;
@@ -114,7 +119,8 @@ ArrangementRanking rank_arrangements(const ArrangementData& input,
                            [&](const RankedArrangement& a, const RankedArrangement& b) {
                              if (a.verdict != b.verdict)
                                return rank_class(a.verdict) < rank_class(b.verdict);
-                             return criteria[a.candidate] < criteria[b.candidate];
+                             return std::round(criteria[a.candidate] * tie_steps) <
+                                    std::round(criteria[b.candidate] * tie_steps);
                            });
   return result;
 }

@@ -41,7 +41,8 @@ Json row_entry(const RankedArrangement& row, const RankReport& report, PhaseSign
               return moment_entry(atom, report, sign);
             }));
   entry.set("undetermined", Json::array_of(row.undetermined));
-  entry.set("computed", Json::array_of(row.fit.computed));
+  entry.set("computed", Json::array_of(compared_points(report.ranking, row),
+                                       [](const ComparedPoint& point) { return point.computed; }));
   return entry;
 }
 

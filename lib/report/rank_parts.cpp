@@ -6,6 +6,11 @@
 #include "report/text.hpp"
 
 namespace spinsieve {
+namespace {
+
+constexpr double rounding = 1e-9;  // Of a sum that symmetry makes vanish, in units of sigma.
+
+}  // namespace
 
 std::vector<ComparedPoint> compared_points(const ArrangementRanking& ranking,
                                            const RankedArrangement& row) {
@@ -21,6 +26,7 @@ std::vector<ComparedPoint> compared_points(const ArrangementRanking& ranking,
       point.observed = measured[i].observed;
       point.sigma = measured[i].sigma;
       point.computed = row.fit.computed[static_cast<Eigen::Index>(i)];
+      if (std::abs(point.computed) < rounding * point.sigma) point.computed = 0;
       point.measurement = plan;
       point.deviation = (point.computed - point.observed) / point.sigma;
       if ((point.kind == PointKind::at_least && point.deviation > 0) ||

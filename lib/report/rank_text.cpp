@@ -39,19 +39,23 @@ void table_of_candidates(TextPage& page, const RankReport& report) {
   page.table(table);
 }
 
+std::string parameters_text(const Candidate& candidate, const RankedArrangement& row) {
+  std::string text;
+  for (std::size_t p = 0; p < candidate.parameters.size(); ++p)
+    text += (p > 0 ? ", " : "") + candidate.parameters[p] + " = " +
+            fixed(row.fit.parameters[static_cast<Eigen::Index>(p)], 3);
+  return text;
+}
+
 void describe(TextPage& page, const RankedArrangement& row, const RankReport& report,
               PhaseSign sign) {
   const Candidate& candidate = report.candidates[row.candidate];
   page.heading(candidate.id + ": " + irreps_text(candidate, report.wavevectors) + ", direction " +
                direction_text(candidate));
-  std::string parameters;
-  for (std::size_t p = 0; p < candidate.parameters.size(); ++p)
-    parameters += (p > 0 ? ", " : "") + candidate.parameters[p] + " = " +
-                  fixed(row.fit.parameters[static_cast<Eigen::Index>(p)], 3);
-  page.item("Parameters", parameters, name_width);
+  const bool relative = report.ranking.scale == ScaleMeaning::relative;
+  if (!relative) page.item("Parameters", parameters_text(candidate, row) + " µB", name_width);
   for (const std::string& open : row.undetermined) page.item("Left open", open, name_width);
   page.blank();
-  const bool relative = report.ranking.scale == ScaleMeaning::relative;
   const bool real = std::ranges::all_of(row.moments, &AtomMoment::self_conjugate);
   Table table({{"site", Align::left},
                {"atom at", Align::left},
