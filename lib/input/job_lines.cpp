@@ -1,3 +1,4 @@
+#include <algorithm>
 #include <array>
 
 #include "input/csv.hpp"
@@ -26,9 +27,8 @@ struct Table {
 };
 
 bool has_column(const Node& list, std::string_view column) {
-  for (const Node& row : list.items)
-    if (row.find(column) != nullptr) return true;
-  return false;
+  return std::ranges::any_of(list.items,
+                             [column](const Node& row) { return row.find(column) != nullptr; });
 }
 
 void require_column(const Node& list, std::span<const std::string_view> one_of) {

@@ -1,6 +1,7 @@
 #include <algorithm>
 #include <array>
 #include <numeric>
+#include <utility>
 
 #include "input/job_parts.hpp"
 
@@ -26,20 +27,17 @@ std::int64_t common_denominator(const FractionVector& k, std::int64_t limit) {
 
 /// Number of independent rows.
 int rank(std::array<FractionVector, 3> rows) {
-  int found = 0;
+  std::size_t found = 0;
   for (std::size_t column = 0; column < 3; ++column) {
-    const auto start = rows.begin() + found;
-    const auto pivot = std::find_if(
-        start, rows.end(), [column](const FractionVector& row) { return !row[column].is_zero(); });
-    if (pivot == rows.end()) continue;
-    std::iter_swap(start, pivot);
-    for (auto row = start + 1; row != rows.end(); ++row) {
-      const Fraction factor = (*row)[column] / (*start)[column];
-      *row = *row - factor * *start;
-    }
+    std::size_t pivot = found;
+    while (pivot < 3 && rows[pivot][column].is_zero()) ++pivot;
+    if (pivot == 3) continue;
+    std::swap(rows[found], rows[pivot]);
+    for (std::size_t row = found + 1; row < 3; ++row)
+      rows[row] = rows[row] - rows[row][column] / rows[found][column] * rows[found];
     ++found;
   }
-  return found;
+  return static_cast<int>(found);
 }
 
 void require_sound_parameters(const Node& node, const Wavevector& k) {

@@ -7,6 +7,7 @@
 #include <yaml-cpp/eventhandler.h>
 #include <yaml-cpp/exceptions.h>
 #include <yaml-cpp/mark.h>
+#include <yaml-cpp/node/node.h>  // Defines what parser.h only declares.
 #include <yaml-cpp/parser.h>
 
 namespace spinsieve {
@@ -104,7 +105,7 @@ class TreeBuilder : public YAML::EventHandler {
                 "the key " + in_quotes(key.text) + " has no value; give one or leave the key out");
   }
 
-  void OnAlias(const YAML::Mark& mark, YAML::anchor_t) override {
+  void OnAlias(const YAML::Mark& mark, YAML::anchor_t /*anchor*/) override {
     throw Error(source_->place(mark), "aliases (*name) are not accepted; write the value out");
   }
 
@@ -126,14 +127,14 @@ class TreeBuilder : public YAML::EventHandler {
   }
 
   void OnSequenceStart(const YAML::Mark& mark, const std::string& tag, YAML::anchor_t anchor,
-                       YAML::EmitterStyle::value) override {
+                       YAML::EmitterStyle::value /*style*/) override {
     refuse_decoration(mark, tag, anchor);
     open(NodeKind::list, mark);
   }
   void OnSequenceEnd() override { close(); }
 
   void OnMapStart(const YAML::Mark& mark, const std::string& tag, YAML::anchor_t anchor,
-                  YAML::EmitterStyle::value) override {
+                  YAML::EmitterStyle::value /*style*/) override {
     refuse_decoration(mark, tag, anchor);
     open(NodeKind::mapping, mark);
   }
