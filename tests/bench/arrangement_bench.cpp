@@ -38,4 +38,3 @@ BENCHMARK(properties)->DenseRange(0, 3);
 
 }  // namespace
 }  // namespace spinsieve
-
