@@ -9,7 +9,7 @@ build_packages=(
 check_packages=(
   googletest libgtest-dev libgmock-dev libbenchmark-dev
   clang-14 clang-tidy-14 clang-format-14 libclang-rt-14-dev
-  python3 python3-periodictable
+  python3 python3-periodictable gap-core
 )
 
 # install_packages NAME…: installs what is missing, asks nothing; root, or whoever may use sudo.
