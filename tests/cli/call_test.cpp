@@ -90,6 +90,18 @@ TEST(CallTest, AClosedPipeIsNoFault) {
   EXPECT_THAT(run.errors, IsEmpty());
 }
 
+TEST(CallTest, AnInterruptEndsWithItsOwnCodeAndNoFile) {
+  const ScratchFolder folder;
+  RunOptions options;
+  options.folder = folder.path();
+  options.interrupted = true;  // While the program waits for the rest of a job.
+  options.input = "spinsieve: 1\n";
+  const Outcome run = run_program({"rank", "-", "--out", "result.txt"}, options);
+  EXPECT_EQ(run.exit_code, 130);
+  EXPECT_THAT(run.output, IsEmpty());
+  EXPECT_THAT(folder.entries(), IsEmpty());
+}
+
 TEST(CallTest, AFullDeviceIsAnError) {
   RunOptions options;
   options.output_file = "/dev/full";

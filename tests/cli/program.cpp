@@ -2,6 +2,7 @@
 
 #include <algorithm>
 #include <array>
+#include <csignal>
 #include <cstdlib>
 #include <fstream>
 #include <sstream>
@@ -79,10 +80,16 @@ Outcome run_program(const std::vector<std::string>& arguments, const RunOptions&
   // Jobs are far smaller than the buffer of a pipe, so writing first cannot block.
   if (::write(input[1], options.input.data(), options.input.size()) < 0)
     throw std::runtime_error("write");
-  ::close(input[1]);
+  if (options.interrupted) {
+    ::usleep(100'000);
+    ::kill(child, SIGINT);
+  } else {
+    ::close(input[1]);
+  }
   drain(output_end, run.output, errors[0], run.errors);
   if (output_end >= 0) ::close(output_end);
   ::close(errors[0]);
+  if (options.interrupted) ::close(input[1]);
   int status = 0;
   ::waitpid(child, &status, 0);
   run.exit_code = WIFEXITED(status) ? WEXITSTATUS(status) : 128 + WTERMSIG(status);

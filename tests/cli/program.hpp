@@ -17,6 +17,7 @@ struct RunOptions {
   std::filesystem::path folder;          ///< Where it runs; the source tree without one.
   std::string input;                     ///< Standard input.
   std::vector<std::string> environment;  ///< "NAME=VALUE" on top of the test's own.
+  bool interrupted = false;              ///< Keep standard input open and send SIGINT.
   bool reader_closes = false;            ///< Close standard output before it writes.
   std::filesystem::path output_file;     ///< Standard output goes there instead.
 };
