@@ -1,6 +1,7 @@
 #include "arrangement/bulk_properties.hpp"
 #include "report/candidate_text.hpp"
 #include "report/enumerate_report.hpp"
+#include "report/exact_text.hpp"
 
 namespace spinsieve {
 namespace {
@@ -72,7 +73,7 @@ void describe(TextPage& page, const Candidate& candidate, const EnumerateReport&
         {"site"}, {"atom at"}, {arm.self_conjugate ? "moment, µB" : "Fourier component S, µB"}};
     Table table(columns);
     for (std::size_t j = 0; j < arm.atoms.size(); ++j)
-      table.add_row({report.sites[arm.atoms[j].site].label, to_string(arm.atoms[j].position),
+      table.add_row({report.sites[arm.atoms[j].site].label, position_text(arm.atoms[j].position),
                      moment_form(arm, j, candidate.parameters, sign)});
     if (field.arms.size() > 1) page.paragraph("k = (" + to_string(arm.k) + ")");
     page.table(table);

@@ -28,6 +28,16 @@ std::string exact_text(Phase phase, const Cyclotomic& value) {
   return factor + "*(" + to_string(value) + ")";
 }
 
+std::string position_text(const FractionVector& position) {
+  constexpr std::int64_t readable_denominator = 24;
+  std::string text;
+  for (const Fraction x : position)
+    text +=
+        (text.empty() ? "" : ", ") +
+        (x.denominator() <= readable_denominator ? to_string(x) : significant(x.to_double(), 6));
+  return text;
+}
+
 std::string conjugated(std::string_view exact) {
   std::string result;
   while (true) {

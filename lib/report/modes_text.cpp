@@ -127,7 +127,7 @@ void list_sites(TextPage& page, const WavevectorModes& modes, const ModesReport&
       counts.push_back(modes.sites[s].multiplicity(i));
     const std::vector<std::size_t> exchange = multiplicities(
         modes.little_group, modes.irreps, modes.sites[s].orbit(), AtomQuantity::scalar);
-    table.add_row({report.sites[s].label, to_string(report.sites[s].position),
+    table.add_row({report.sites[s].label, position_text(report.sites[s].position),
                    std::to_string(modes.sites[s].orbit().atoms().size()), sum_text(modes, counts),
                    sum_text(modes, exchange)});
   }
@@ -142,7 +142,7 @@ void list_basis(TextPage& page, const WavevectorModes& modes, const ModesReport&
       std::vector<Table::Column> right;
       std::vector<std::vector<std::string>> rows;
       for (const std::size_t atom : representation.suborbits()[part].atoms)
-        rows.push_back({to_string(representation.orbit().atoms()[atom].position)});
+        rows.push_back({position_text(representation.orbit().atoms()[atom].position)});
       int number = 0;
       for (const ModeCopy& copy : representation.copies()) {
         if (copy.irrep != irrep || copy.suborbit != part) continue;

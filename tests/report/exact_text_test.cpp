@@ -25,6 +25,12 @@ TEST(ExactTextTest, ConjugationTurnsEveryPhase) {
   EXPECT_EQ(conjugated("e(1/5)*(1+e(1/8))"), "e(-1/5)*(1+e(-1/8))");
 }
 
+TEST(ExactTextTest, PositionsAreFractionsWhereThatSaysMore) {
+  EXPECT_EQ(position_text({Fraction(3, 4), Fraction(1, 3), Fraction(0)}), "3/4, 1/3, 0");
+  EXPECT_EQ(position_text({Fraction(2097, 2500), Fraction(-1, 24), Fraction(1, 25)}),
+            "0.8388, -1/24, 0.04");
+}
+
 TEST(FactorTextTest, WritesFactorsAsAReaderWould) {
   const std::complex<double> i(0, 1);
   EXPECT_EQ(factor_text(0, "u"), "");
