@@ -37,9 +37,9 @@ class Equations {
   std::size_t unknowns() const noexcept { return by_pivot_.size(); }
 
  private:
-  static void subtract(SurdRow& row, const Surd factor, const SurdRow& other) {
-    for (std::size_t j = 0; j < row.size(); ++j)
-      if (!other[j].is_zero()) row[j] = row[j] - factor * other[j];
+  static void subtract(SurdRow& target, const Surd factor, const SurdRow& source) {
+    for (std::size_t j = 0; j < target.size(); ++j)
+      if (!source[j].is_zero()) target[j] = target[j] - factor * source[j];
   }
 
   std::vector<SurdRow> by_pivot_;
@@ -54,7 +54,8 @@ std::string combination(const Equations& equations, std::size_t component,
     const Surd factor = equations.coefficient(component, j);
     if (factor.is_zero()) continue;
     std::string text = to_string(factor);
-    if (!factor.rational().is_zero() && !factor.root().is_zero()) text = "(" + text + ")";
+    if (!factor.rational().is_zero() && !factor.root().is_zero())
+      text.insert(0, 1, '(').append(1, ')');
     if (text == "1") text.clear();
     if (text == "-1") text = "-";
     if (!result.empty() && !text.starts_with('-')) result += '+';
@@ -93,7 +94,7 @@ TensorForm vector_form(std::span<const PrimedRotation> generators, Parity parity
     const auto& [R, primed] = generators[g];
     int sign = 1;
     if (parity == Parity::axial) sign = determinant(R) * (primed ? -1 : 1);
-    return Surd(Fraction(sign * R[i][j]));
+    return Surd(Fraction(std::int64_t{sign} * R[i][j]));
   });
 }
 
@@ -156,7 +157,7 @@ BulkProperties bulk_properties(const MagneticPointGroup& group,
   std::vector<Surd> sign;  // of an axial quantity that is odd in time
   for (const auto& [rotation, primed] : generators) {
     R.push_back(frame.cartesian(rotation));
-    sign.emplace_back(Fraction(determinant(rotation) * (primed ? -1 : 1)));
+    sign.emplace_back(Fraction(std::int64_t{determinant(rotation)} * (primed ? -1 : 1)));
   }
   result.linear_magnetoelectric =
       invariant_form(generators, 3, electric, [&](std::size_t g, std::size_t i, std::size_t j) {

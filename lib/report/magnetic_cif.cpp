@@ -88,6 +88,7 @@ std::string magnetic_text(const PrimedOperation& operation) {
 std::string operation_loop(const std::string& category,
                            const std::vector<PrimedOperation>& operations) {
   std::vector<std::vector<std::string>> rows;
+  rows.reserve(operations.size());
   for (const auto& operation : operations)
     rows.push_back({std::to_string(rows.size() + 1), magnetic_text(operation)});
   return cif_loop({category + ".id", category + ".xyz"}, rows);

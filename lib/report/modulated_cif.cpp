@@ -101,6 +101,7 @@ std::string operation_loop(const std::string& category,
                            const std::vector<SuperspaceOperation>& operations,
                            const FractionVector& k) {
   std::vector<std::vector<std::string>> rows;
+  rows.reserve(operations.size());
   for (const auto& operation : operations)
     rows.push_back({std::to_string(rows.size() + 1), cif_quoted(superspace_text(operation, k))});
   return cif_loop({category + ".id", category + ".algebraic"}, rows);

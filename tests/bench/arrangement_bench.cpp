@@ -11,7 +11,7 @@
 namespace spinsieve {
 namespace {
 
-/// P-1 (monoclinic and triclinic searches are the longest), Pnma, I_c4/mcm, Ia'-3'd'.
+/// P-1 (monoclinic and triclinic searches are the longest), Pnma, I_c4/mmm, Ia'-3'd'.
 constexpr int types[] = {4, 546, 1200, 1651};
 
 void identify(benchmark::State& state) {
