@@ -1,8 +1,6 @@
 #include "ranking/arrangement_ranking.hpp"
 
 #include <algorithm>
-#include <cmath>
-#include <numeric>
 
 #include "ranking/observed.hpp"
 
@@ -13,10 +11,6 @@ namespace {
 /// Phases round half a turn at which a modulated moment is held below its limit; between two the
 /// moment exceeds the largest sampled one by less than 1 %.
 constexpr std::size_t limit_phases = 12;
-
-/// Criteria that differ by less than 1e-6 are rounding: such candidates keep the order of their
-/// ids.
-constexpr double tie_steps = 1e6;
 
 std::vector<Arm> arms_of(std::span<const Candidate> candidates) {
   std::vector<Arm> arms;
@@ -50,9 +44,6 @@ std::vector<ScaleGroup> scales_of(std::span<const Measurement> measurements) {
   return scales;
 }
 
-/// Order of the list: what stands, what was not tested, what failed, what is excluded.
-int rank_class(Verdict verdict) { return static_cast<int>(verdict); }
-
 }  // namespace
 
 ArrangementRanking rank_arrangements(const ArrangementData& input,
@@ -78,14 +69,15 @@ ArrangementRanking rank_arrangements(const ArrangementData& input,
     result.warnings.emplace_back(
         "moment_limit has no effect without an absolute scale; give scale a number");
 
-  result.ranking.resize(input.candidates.size());
+  std::vector<MomentField> fields(input.candidates.size());
+  std::vector<CandidateModel> models(input.candidates.size());
   executor.for_each(input.candidates.size(), [&](std::size_t i) {
-    const Candidate& candidate = input.candidates[i];
-    const MomentField field = to_moment_field(candidate.field, input.cell);
+    fields[i] = to_moment_field(input.candidates[i].field, input.cell);
+    const MomentField& field = fields[i];
     std::vector<std::vector<DataPoint>> points;
     for (const ObservationPlan& plan : result.plans)
       points.push_back(data_points(plan, scatterers, field));
-    CandidateModel model;
+    CandidateModel& model = models[i];
     model.forms = observed_forms(field.parameters, points);
     if (result.scale == ScaleMeaning::absolute)
       for (std::size_t s = 0; s < input.sites.size(); ++s)
@@ -94,34 +86,30 @@ ArrangementRanking rank_arrangements(const ArrangementData& input,
               moment_limits(field, input.cell, s, *input.sites[s].moment_limit, limit_phases),
               std::back_inserter(model.limits));
     if (options.equal_moments) model.equalities = equal_moment_conditions(field, input.cell);
-
-    RankedArrangement& ranked = result.ranking[i];
-    ranked.candidate = i;
-    FitOptions fit_options;
-    fit_options.seed = options.seed + i;
-    ranked.fit = fit(result.data, model, fit_options);
-    ranked.p_value = p_value(ranked.fit.chi2, result.points, ranked.fit.effective_parameters);
-    ranked.verdict = verdict(ranked.fit.chi2, ranked.lower_bound, result.points,
-                             ranked.fit.effective_parameters, options.significance);
-    ranked.moments = fitted_moments(field, input.cell, ranked.fit, result.scale);
-    ranked.undetermined =
-        undetermined_in_words(field, input.cell, ranked.fit, candidate.parameters);
-    if (result.scale == ScaleMeaning::relative)
-      ranked.undetermined.emplace_back("overall size of the moments");
   });
 
-  std::vector<double> criteria;
-  for (const RankedArrangement& ranked : result.ranking)
-    criteria.push_back(akaike(ranked.fit.chi2, result.points, ranked.fit.effective_parameters));
-  const std::vector<double> weights = akaike_weights(criteria);
-  for (std::size_t i = 0; i < weights.size(); ++i) result.ranking[i].weight = weights[i];
-  std::ranges::stable_sort(result.ranking,
-                           [&](const RankedArrangement& a, const RankedArrangement& b) {
-                             if (a.verdict != b.verdict)
-                               return rank_class(a.verdict) < rank_class(b.verdict);
-                             return std::round(criteria[a.candidate] * tie_steps) <
-                                    std::round(criteria[b.candidate] * tie_steps);
-                           });
+  RankingOptions ranking_options;
+  ranking_options.significance = options.significance;
+  ranking_options.seed = options.seed;
+  Ranking judged = ranking(result.data, models, ranking_options, executor);
+  result.ranking.resize(judged.candidates.size());
+  executor.for_each(judged.candidates.size(), [&](std::size_t i) {
+    RankedCandidate& from = judged.candidates[i];
+    RankedArrangement& row = result.ranking[i];
+    const MomentField& field = fields[from.candidate];
+    row.candidate = from.candidate;
+    row.fit = std::move(from.fit);
+    if (from.bound) row.lower_bound = from.bound->value;
+    row.verdict = from.verdict;
+    row.p_value = from.p_value;
+    row.weight = from.weight;
+    row.ties = std::move(from.ties);
+    row.moments = fitted_moments(field, input.cell, row.fit, result.scale);
+    row.undetermined = undetermined_in_words(field, input.cell, row.fit,
+                                             input.candidates[row.candidate].parameters);
+    if (result.scale == ScaleMeaning::relative)
+      row.undetermined.emplace_back("overall size of the moments");
+  });
   return result;
 }
 

@@ -9,7 +9,7 @@
 #include "arrangement/candidate.hpp"
 #include "exact/executor.hpp"
 #include "ranking/moments.hpp"
-#include "ranking/verdict.hpp"
+#include "ranking/ranking.hpp"
 #include "scattering/observation.hpp"
 
 namespace spinsieve {
@@ -32,15 +32,16 @@ struct ArrangementRankingOptions {
 struct RankedArrangement {
   std::size_t candidate = 0;  ///< Index into the candidates given.
   Fit fit;
-  std::optional<double> lower_bound;
+  std::optional<double> lower_bound;  ///< Certified: no parameters reach a smaller χ².
   Verdict verdict = Verdict::survives;
   std::optional<double> p_value;
-  double weight = 0;  ///< Akaike weight.
+  double weight = 0;          ///< Akaike weight.
+  std::vector<TieWith> ties;  ///< Indices into the candidates given.
   std::vector<AtomMoment> moments;
   std::vector<std::string> undetermined;  ///< In words.
 };
 
-/// Candidates in order: those that stand first, then by χ² plus twice the effective parameters.
+/// Candidates in the order of ranking().
 struct ArrangementRanking {
   ScaleMeaning scale = ScaleMeaning::relative;
   std::size_t points = 0;              ///< Lines and absences, windows merged.

@@ -33,6 +33,15 @@ Json row_entry(const RankedArrangement& row, const RankReport& report, PhaseSign
   entry.set("p_value", row.p_value ? Json(*row.p_value) : Json());
   entry.set("weight", row.weight);
   entry.set("verdict", to_string(row.verdict));
+  Json ties = Json::array();
+  for (const TieWith& tie : row.ties) {
+    if (tie.relation != TieRelation::equal) continue;
+    Json item = Json::object();
+    item.set("id", report.candidates[tie.candidate].id);
+    item.set("proof", tie.proof == TieProof::proved ? "proved" : "tested");
+    ties.push(std::move(item));
+  }
+  entry.set("tied_with", std::move(ties));
   Json parameters = Json::object();
   for (std::size_t p = 0; p < candidate.parameters.size(); ++p)
     parameters.set(candidate.parameters[p], row.fit.parameters[static_cast<Eigen::Index>(p)]);

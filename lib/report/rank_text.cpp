@@ -47,6 +47,25 @@ std::string parameters_text(const Candidate& candidate, const RankedArrangement&
   return text;
 }
 
+/// "the same intensities as 5c (proved by a linear map of the parameters)".
+std::string tie_text(const TieWith& tie, const std::string& other) {
+  std::string text;
+  switch (tie.relation) {
+    case TieRelation::first_within_second:
+      text = "all its intensities are reached by " + other + " too";
+      break;
+    case TieRelation::second_within_first:
+      text = "reaches all intensities of " + other;
+      break;
+    case TieRelation::equal:
+    case TieRelation::none:
+      text = "the same intensities as " + other;
+      break;
+  }
+  return text + (tie.proof == TieProof::proved ? " (proved by a linear map of the parameters)"
+                                               : " (tested at random points)");
+}
+
 void describe(TextPage& page, const RankedArrangement& row, const RankReport& report,
               PhaseSign sign) {
   const Candidate& candidate = report.candidates[row.candidate];
@@ -55,20 +74,22 @@ void describe(TextPage& page, const RankedArrangement& row, const RankReport& re
   const bool relative = report.ranking.scale == ScaleMeaning::relative;
   if (!relative) page.item("Parameters", parameters_text(candidate, row) + " µB", name_width);
   for (const std::string& open : row.undetermined) page.item("Left open", open, name_width);
+  for (const TieWith& tie : row.ties)
+    page.item("Tie", tie_text(tie, report.candidates[tie.candidate].id), name_width);
   page.blank();
   const bool real = std::ranges::all_of(row.moments, &AtomMoment::self_conjugate);
   Table table({{"site", Align::left},
                {"atom at", Align::left},
-               {real ? "along a" : "S along a", Align::right},
-               {real ? "along b" : "S along b", Align::right},
-               {real ? "along c" : "S along c", Align::right},
+               {real ? "moment on a, b, c" : "Fourier component S on a, b, c", Align::left},
                {relative ? "size" : "size, µB", Align::right}});
-  for (const AtomMoment& atom : row.moments)
+  for (const AtomMoment& atom : row.moments) {
+    std::string moment = "(";
+    for (std::size_t i = 0; i < 3; ++i)
+      moment += (i > 0 ? ", " : "") + component_text(atom.moment[i], real, sign);
     table.add_row(
-        {report.sites[atom.site].site.label, to_string(atom.position),
-         component_text(atom.moment[0], real, sign), component_text(atom.moment[1], real, sign),
-         component_text(atom.moment[2], real, sign),
+        {report.sites[atom.site].site.label, to_string(atom.position), moment + ")",
          atom.sigma ? with_uncertainty(atom.magnitude, *atom.sigma) : fixed(atom.magnitude, 3)});
+  }
   page.table(table);
 }
 
