@@ -87,7 +87,7 @@ void describe(TextPage& page, const RankedArrangement& row, const RankReport& re
     for (std::size_t i = 0; i < 3; ++i)
       moment += (i > 0 ? ", " : "") + component_text(atom.moment[i], real, sign);
     table.add_row(
-        {report.sites[atom.site].site.label, to_string(atom.position), moment + ")",
+        {report.sites[atom.site].site.label, position_text(atom.position), moment + ")",
          atom.sigma ? with_uncertainty(atom.magnitude, *atom.sigma) : fixed(atom.magnitude, 3)});
   }
   page.table(table);
