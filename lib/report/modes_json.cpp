@@ -12,6 +12,29 @@ Json exact_vector(const FractionVector& v) {
 
 Json wavevector(const Wavevector& k) { return Json::array_of(component_texts(k)); }
 
+Json type_entry(const Stratum& stratum) {
+  Json entry = Json::object();
+  entry.set("kind", to_string(stratum.kind));
+  entry.set("k", wavevector(stratum.k));
+  return entry;
+}
+
+/// Sets wavevector_type, lies_on and close_to, unless k has free parameters.
+void place_wavevector(Json& entry, const LittleGroup& little_group) {
+  if (little_group.k().is_symbolic()) return;
+  const std::vector<Stratum> list = strata(little_group.tables());
+  const StratumPosition position =
+      stratum_position(little_group.tables(), little_group.k(), list, nearby_reach);
+  entry.set("wavevector_type", type_entry(list[position.own]));
+  entry.set("lies_on",
+            Json::array_of(position.lies_on, [&](std::size_t i) { return type_entry(list[i]); }));
+  entry.set("close_to", Json::array_of(position.nearby, [&](const NearbyStratum& nearby) {
+              Json item = type_entry(list[nearby.stratum]);
+              item.set("at", wavevector(nearby.k));
+              return item;
+            }));
+}
+
 Json operations(const LittleGroup& little_group) {
   Json list = Json::array();
   for (std::size_t i = 0; i < little_group.order(); ++i) {
@@ -98,6 +121,9 @@ Json sites(const WavevectorModes& modes, const ModesReport& report) {
     entry.set("exchange_decomposition",
               decomposition(modes, multiplicities(modes.little_group, modes.irreps,
                                                   representation.orbit(), AtomQuantity::scalar)));
+    entry.set("displacement_decomposition",
+              decomposition(modes, multiplicities(modes.little_group, modes.irreps,
+                                                  representation.orbit(), AtomQuantity::polar)));
     list.push(std::move(entry));
   }
   return list;
@@ -150,6 +176,8 @@ std::string modes_json(const ModesReport& report, const ReportOptions& options) 
     entry.set("star", Json::array_of(little_group.star(), wavevector));
     entry.set("minus_k_in_star", little_group.minus_k_in_star());
     entry.set("little_cogroup_order", little_group.order());
+    place_wavevector(entry, little_group);
+    entry.set("labels_of", wavevector(little_group.canonical_k()));
     entry.set("operations", operations(little_group));
     entry.set("irreps", irreps(modes, options.phase));
     entry.set("sites", sites(modes, report));

@@ -12,6 +12,11 @@
 
 namespace spinsieve {
 
+/// A type of wavevector is "close" when its nearest k differs by less in every component: what a
+/// rounded number or a slight modulation amounts to.
+inline const Fraction nearby_reach{1, 20};
+constexpr std::size_t nearby_listed = 3;  ///< In a text; JSON has them all.
+
 /// What the reports of `modes` need beside the wavevectors.
 struct ModesReport {
   std::span<const WavevectorModes> wavevectors;

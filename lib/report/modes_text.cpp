@@ -18,6 +18,24 @@ void tables(TextPage& page, const std::vector<Table::Column>& left,
   }
 }
 
+std::string stratum_text(const Stratum& stratum) {
+  return std::string(to_string(stratum.kind)) + " (" + to_string(stratum.k) + ")";
+}
+
+/// On which types of wavevector k lies, and which of higher symmetry a small change would reach.
+void place_wavevector(TextPage& page, const LittleGroup& little_group) {
+  if (little_group.k().is_symbolic()) return;
+  const std::vector<Stratum> list = strata(little_group.tables());
+  const StratumPosition position =
+      stratum_position(little_group.tables(), little_group.k(), list, nearby_reach);
+  page.item("Type", stratum_text(list[position.own]), name_width);
+  std::string nearby;
+  for (std::size_t i = 0; i < position.nearby.size() && i < nearby_listed; ++i)
+    nearby += (nearby.empty() ? "" : "; ") + stratum_text(list[position.nearby[i].stratum]) +
+              " at (" + to_string(position.nearby[i].k) + ")";
+  if (!nearby.empty()) page.item("Close to", nearby + ", of higher symmetry", name_width);
+}
+
 void describe_wavevector(TextPage& page, const LittleGroup& little_group,
                          const std::string& modulation) {
   page.heading("k = (" + to_string(little_group.k()) + ")");
@@ -35,6 +53,9 @@ void describe_wavevector(TextPage& page, const LittleGroup& little_group,
   page.item("Little group",
             std::to_string(little_group.order()) + " of the " +
                 std::to_string(little_group.group().order()) + " rotations",
+            name_width);
+  place_wavevector(page, little_group);
+  page.item("Labels", "those of the arm (" + to_string(little_group.canonical_k()) + ")",
             name_width);
 }
 
@@ -119,17 +140,25 @@ std::string sum_text(const WavevectorModes& modes, const std::vector<std::size_t
 
 void list_sites(TextPage& page, const WavevectorModes& modes, const ModesReport& report) {
   page.blank();
-  page.paragraph("Decomposition: moments, and the permutation part alone (exchange modes)");
-  Table table({{"site"}, {"position"}, {"atoms", Align::right}, {"moments"}, {"exchange modes"}});
+  page.paragraph(
+      "Decomposition: moments, the permutation part alone (exchange modes), displacements");
+  Table table({{"site"},
+               {"position"},
+               {"atoms", Align::right},
+               {"moments"},
+               {"exchange modes"},
+               {"displacements"}});
   for (std::size_t s = 0; s < modes.sites.size(); ++s) {
     std::vector<std::size_t> counts;
     for (std::size_t i = 0; i < modes.irreps.size(); ++i)
       counts.push_back(modes.sites[s].multiplicity(i));
     const std::vector<std::size_t> exchange = multiplicities(
         modes.little_group, modes.irreps, modes.sites[s].orbit(), AtomQuantity::scalar);
+    const std::vector<std::size_t> displacements = multiplicities(
+        modes.little_group, modes.irreps, modes.sites[s].orbit(), AtomQuantity::polar);
     table.add_row({report.sites[s].label, position_text(report.sites[s].position),
                    std::to_string(modes.sites[s].orbit().atoms().size()), sum_text(modes, counts),
-                   sum_text(modes, exchange)});
+                   sum_text(modes, exchange), sum_text(modes, displacements)});
   }
   page.table(table);
 }
