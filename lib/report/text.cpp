@@ -142,6 +142,57 @@ std::string with_uncertainty(double value, double sigma) {
   return fmt::format("{}({:.0f})", fixed(value, decimals), last_digits);
 }
 
+namespace {
+
+/// Widths that fit the page where possible: the widest left-aligned column gives way first.
+std::vector<std::size_t> column_widths(const std::vector<std::vector<std::string>>& rows,
+                                       const std::vector<Table::Column>& columns,
+                                       std::size_t page) {
+  constexpr std::size_t narrowest = 12;
+  std::vector<std::size_t> widths(columns.size(), 0);
+  for (const std::vector<std::string>& row : rows)
+    for (std::size_t i = 0; i < row.size(); ++i)
+      for (const std::string& part : wrapped(row[i], std::string::npos))
+        widths[i] = std::max(widths[i], display_width(part));
+  const std::size_t gaps = column_gap * (columns.size() - 1);
+  while (std::accumulate(widths.begin(), widths.end(), gaps) > page) {
+    std::size_t widest = columns.size();
+    for (std::size_t i = 0; i < columns.size(); ++i)
+      if (columns[i].align == Align::left && widths[i] > narrowest &&
+          (widest == columns.size() || widths[i] > widths[widest]))
+        widest = i;
+    if (widest == columns.size()) break;
+    --widths[widest];
+  }
+  return widths;
+}
+
+/// The lines of one row, its cells broken to the widths.
+void add_row_lines(std::vector<std::string>& lines, const std::vector<std::string>& row,
+                   const std::vector<Table::Column>& columns,
+                   const std::vector<std::size_t>& widths) {
+  std::vector<std::vector<std::string>> parts;
+  std::size_t height = 1;
+  for (std::size_t i = 0; i < row.size(); ++i) {
+    parts.push_back(wrapped(row[i], widths[i]));
+    height = std::max(height, parts.back().size());
+  }
+  for (std::size_t at = 0; at < height; ++at) {
+    std::string line;
+    for (std::size_t i = 0; i < row.size(); ++i) {
+      const std::string cell = at < parts[i].size() ? parts[i][at] : "";
+      const std::size_t used = display_width(cell);
+      const std::string blanks(widths[i] > used ? widths[i] - used : 0, ' ');
+      if (i > 0) line.append(column_gap, ' ');
+      line += columns[i].align == Align::right ? blanks + cell : cell + blanks;
+    }
+    line.erase(line.find_last_not_of(' ') + 1);
+    lines.push_back(line);
+  }
+}
+
+}  // namespace
+
 void Table::add_row(std::vector<std::string> cells) {
   if (cells.size() != columns_.size())
     throw std::logic_error("a table row has " + std::to_string(cells.size()) + " cells for " +
@@ -153,53 +204,16 @@ std::vector<std::string> Table::lines(std::size_t width, Letters letters) const 
   const auto in_letters = [letters](const std::string& text) {
     return letters == Letters::plain ? to_plain(text) : text;
   };
-  std::vector<std::vector<std::string>> rows;
-  rows.emplace_back();
+  std::vector<std::vector<std::string>> rows(1);
   for (const Column& column : columns_) rows.front().push_back(in_letters(column.heading));
   for (const std::vector<std::string>& row : rows_) {
     rows.emplace_back();
     for (const std::string& cell : row) rows.back().push_back(in_letters(cell));
   }
-
-  constexpr std::size_t narrowest = 12;
-  std::vector<std::size_t> widths(columns_.size(), 0);
-  for (const std::vector<std::string>& row : rows)
-    for (std::size_t i = 0; i < row.size(); ++i)
-      for (const std::string& part : wrapped(row[i], std::string::npos))
-        widths[i] = std::max(widths[i], display_width(part));
-  const std::size_t gaps = column_gap * (columns_.size() - 1);
-  while (std::accumulate(widths.begin(), widths.end(), gaps) > width) {
-    std::size_t widest = columns_.size();  // The widest column that may be broken.
-    for (std::size_t i = 0; i < columns_.size(); ++i)
-      if (columns_[i].align == Align::left && widths[i] > narrowest &&
-          (widest == columns_.size() || widths[i] > widths[widest]))
-        widest = i;
-    if (widest == columns_.size()) break;
-    --widths[widest];
-  }
+  const std::vector<std::size_t> widths = column_widths(rows, columns_, width);
 
   std::vector<std::string> lines;
-  const auto add_row_lines = [&](const std::vector<std::string>& row) {
-    std::vector<std::vector<std::string>> parts;
-    std::size_t height = 1;
-    for (std::size_t i = 0; i < row.size(); ++i) {
-      parts.push_back(wrapped(row[i], widths[i]));
-      height = std::max(height, parts.back().size());
-    }
-    for (std::size_t at = 0; at < height; ++at) {
-      std::string line;
-      for (std::size_t i = 0; i < row.size(); ++i) {
-        const std::string cell = at < parts[i].size() ? parts[i][at] : "";
-        const std::size_t used = display_width(cell);
-        const std::string blanks(widths[i] > used ? widths[i] - used : 0, ' ');
-        if (i > 0) line.append(column_gap, ' ');
-        line += columns_[i].align == Align::right ? blanks + cell : cell + blanks;
-      }
-      line.erase(line.find_last_not_of(' ') + 1);
-      lines.push_back(line);
-    }
-  };
-  add_row_lines(rows.front());
+  add_row_lines(lines, rows.front(), columns_, widths);
   std::string rule;
   const std::string dash = letters == Letters::plain ? "-" : "─";
   for (std::size_t i = 0; i < widths.size(); ++i) {
@@ -208,7 +222,7 @@ std::vector<std::string> Table::lines(std::size_t width, Letters letters) const 
   }
   rule.erase(rule.find_last_not_of(' ') + 1);
   lines.push_back(rule);
-  for (std::size_t i = 1; i < rows.size(); ++i) add_row_lines(rows[i]);
+  for (std::size_t i = 1; i < rows.size(); ++i) add_row_lines(lines, rows[i], columns_, widths);
   return lines;
 }
 
