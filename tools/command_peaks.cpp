@@ -59,15 +59,19 @@ Arrangement given_arrangement(const Job& job) {
   return result;
 }
 
+[[noreturn]] void refuse_parameter(const Candidate& candidate, const std::string& name) {
+  std::string known;
+  for (const std::string& parameter : candidate.parameters)
+    known += (known.empty() ? "" : ", ") + parameter;
+  throw Error("candidate " + candidate.id + " has no parameter '" + name + "'; " + known +
+              " are accepted");
+}
+
 std::vector<double> given_parameters(const Candidate& candidate, const CommandLine& call) {
   std::vector<double> values(candidate.parameters.size(), 0.0);
-  std::string names;
-  for (const std::string& name : candidate.parameters) names += (names.empty() ? "" : ", ") + name;
   for (const auto& [name, value] : call.parameters) {
     const auto found = std::ranges::find(candidate.parameters, name);
-    if (found == candidate.parameters.end())
-      throw Error("candidate " + candidate.id + " has no parameter '" + name + "'; " + names +
-                  " are accepted");
+    if (found == candidate.parameters.end()) refuse_parameter(candidate, name);
     values[static_cast<std::size_t>(found - candidate.parameters.begin())] = value;
   }
   return values;

@@ -78,7 +78,7 @@ std::vector<Site> sites_of(const Job& job) {
 }
 
 std::vector<WavevectorModes> wavevector_modes(const Job& job,
-                                              std::shared_ptr<const SymmetryTables> tables) {
+                                              const std::shared_ptr<const SymmetryTables>& tables) {
   const std::vector<Site> sites = sites_of(job);
   std::vector<WavevectorModes> modes;
   for (std::size_t i = 0; i < job.propagation.size(); ++i) {

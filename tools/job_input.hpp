@@ -28,7 +28,7 @@ std::vector<Site> sites_of(const Job& job);
 /// The wavevectors of the job with what symmetry says about its sites.
 /// Errors point at the wavevector they concern.
 std::vector<WavevectorModes> wavevector_modes(const Job& job,
-                                              std::shared_ptr<const SymmetryTables> tables);
+                                              const std::shared_ptr<const SymmetryTables>& tables);
 
 /// The candidates that the job's search asks for. Throws Error at the job when there are none.
 std::vector<Candidate> candidates_of(const Job& job, std::span<const WavevectorModes> wavevectors);
