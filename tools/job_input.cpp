@@ -92,6 +92,12 @@ std::vector<WavevectorModes> wavevector_modes(const Job& job,
 }
 
 std::vector<Candidate> candidates_of(const Job& job, std::span<const WavevectorModes> wavevectors) {
+  // Read by the job file, and refused here rather than ignored.
+  if (job.search.arms == Arms::all)
+    throw Error(job.place, "'arms: all' in search is not acted on yet; accepted is single");
+  if (job.search.combine > 1)
+    throw Error(job.place, "'combine: " + std::to_string(job.search.combine) +
+                               "' in search is not acted on yet; accepted is 1");
   for (std::size_t i = 0; i < job.propagation.size(); ++i)
     if (job.propagation[i].is_symbolic())
       throw Error(job.propagation_places[i], "the wavevector " + to_string(job.propagation[i]) +
