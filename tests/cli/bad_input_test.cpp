@@ -148,6 +148,10 @@ TEST(BadInputTest, WhatACommandNeedsIsNamed) {
       {"rank", 5, "propagation: locate", "job.yaml:1:1:", "spinsieve locate finds it"},
       {"enumerate", 5, "propagation: [[0, u, 0]]", "job.yaml:5:15:", "free parameters"},
       {"peaks", 5, "propagation: [[0, 0, 0]]", "job.yaml:1:1:", "peaks needs an arrangement"},
+      {"enumerate", 5, "propagation: [[0, 0, 0]]\nsearch: {arms: all}",
+       "job.yaml:1:1:", "'arms: all' in search is not acted on yet; accepted is single"},
+      {"rank", 5, "propagation: [[0, 0, 0]]\nsearch: {combine: 2}",
+       "job.yaml:1:1:", "'combine: 2' in search is not acted on yet; accepted is 1"},
       {"rank", 4, "  - {label: M1, ion: Ti4+, position: [0, 0, 1/2]}", "job.yaml:4:22:", "Ti4+"},
   };
   for (const auto& [command, line, text, start, part] : cases) {
